@@ -1,41 +1,63 @@
 /** What a figure rests on; one sentence each in the README. */
 export type Basis = 'measured' | 'extrapolated' | 'prior' | 'assumed' | 'sequence';
 
-/** A figure with its 1-sigma (16/84 %) interval; `value` null where it cannot be had (a flag says why). */
+export type QuantityUnit = 'Mx' | 'G' | 'Mm' | 'Mm^2' | 'J' | 'A' | 'mA/m^2' | '1/Mm' | 'H' | '1';
+
+/** A figure with its 1-sigma (16/84 %) interval; all null where it cannot be had (a flag says why). */
 export interface Quantity {
   readonly value: number | null;
   readonly low: number | null;
   readonly high: number | null;
-  readonly unit: string;
+  readonly unit: QuantityUnit;
   readonly basis: Basis;
 }
 
-/** Keys of the quick look, in the order they are shown. */
-export const QUANTITY_KEYS = [
-  'positive_flux',
-  'negative_flux',
-  'unsigned_flux',
-  'net_flux',
-  'flux_imbalance',
-  'peak_positive_field',
-  'peak_negative_field',
-  'strong_field_area',
-  'potential_energy',
-  'free_energy',
-  'free_energy_ceiling',
-  'total_energy',
-  'upward_current',
-  'downward_current',
-  'net_current_positive',
-  'net_current_negative',
-  'peak_current_density',
-  'force_free_alpha',
-  'inversion_line_length',
-  'strong_gradient_line_length',
-  'gradient_weighted_line_length',
-  'near_line_flux',
-  'inductance',
-  'lundquist_number',
-] as const;
+/** The figures of the quick look in the order they are shown, with unit and plain name. */
+export const QUANTITY_FACTS = {
+  positive_flux: { unit: 'Mx', label: 'positive flux' },
+  negative_flux: { unit: 'Mx', label: 'negative flux' },
+  unsigned_flux: { unit: 'Mx', label: 'unsigned flux' },
+  net_flux: { unit: 'Mx', label: 'net flux' },
+  flux_imbalance: { unit: '1', label: 'flux imbalance' },
+  peak_positive_field: { unit: 'G', label: 'peak positive field' },
+  peak_negative_field: { unit: 'G', label: 'peak negative field' },
+  strong_field_area: { unit: 'Mm^2', label: 'strong-field area' },
+  potential_energy: { unit: 'J', label: 'potential energy' },
+  free_energy: { unit: 'J', label: 'free energy' },
+  free_energy_ceiling: { unit: 'J', label: 'free-energy ceiling' },
+  total_energy: { unit: 'J', label: 'total energy' },
+  upward_current: { unit: 'A', label: 'upward current' },
+  downward_current: { unit: 'A', label: 'downward current' },
+  net_current_positive: { unit: 'A', label: 'net current, positive' },
+  net_current_negative: { unit: 'A', label: 'net current, negative' },
+  peak_current_density: { unit: 'mA/m^2', label: 'peak current density' },
+  force_free_alpha: { unit: '1/Mm', label: 'force-free alpha' },
+  inversion_line_length: { unit: 'Mm', label: 'inversion line' },
+  strong_gradient_line_length: { unit: 'Mm', label: 'strong-gradient line' },
+  gradient_weighted_line_length: { unit: 'G', label: 'gradient-weighted line' },
+  near_line_flux: { unit: 'Mx', label: 'near-line flux' },
+  inductance: { unit: 'H', label: 'inductance' },
+  lundquist_number: { unit: '1', label: 'Lundquist number' },
+} as const satisfies Record<string, { unit: QuantityUnit; label: string }>;
 
-export type QuantityKey = (typeof QUANTITY_KEYS)[number];
+export type QuantityKey = keyof typeof QUANTITY_FACTS;
+export const QUANTITY_KEYS = Object.keys(QUANTITY_FACTS) as readonly QuantityKey[];
+
+/** A quantity of its key's unit. */
+export function quantity(
+  key: QuantityKey,
+  value: number,
+  low: number,
+  high: number,
+  basis: Basis,
+): Quantity {
+  const { unit } = QUANTITY_FACTS[key];
+  if (![value, low, high].every(Number.isFinite))
+    return { value: null, low: null, high: null, unit, basis };
+  return { value, low: Math.min(low, value), high: Math.max(high, value), unit, basis };
+}
+
+/** A quantity with a symmetric interval of one `sigma`. */
+export function withSigma(key: QuantityKey, value: number, sigma: number, basis: Basis): Quantity {
+  return quantity(key, value, value - sigma, value + sigma, basis);
+}
