@@ -17,7 +17,8 @@ export function portableRealFft2(
   fft(1, ndarray(re, [ny, nx]), ndarray(im, [ny, nx]));
   for (let y = 0; y < ny; y++) {
     out.re.set(re.subarray(y * nx, y * nx + columns), y * columns);
-    out.im.set(im.subarray(y * nx, y * nx + columns), y * columns);
+    // ndarray-fft transforms with the opposite sign in the exponent; for real maps that conjugates.
+    for (let x = 0; x < columns; x++) out.im[x + columns * y] = -im[x + nx * y];
   }
   return out;
 }
@@ -36,7 +37,7 @@ export function portableInverseRealFft2(
       const stored = x < columns;
       const from = stored ? x + columns * y : nx - x + columns * mirror;
       re[x + nx * y] = spectrum.re[from];
-      im[x + nx * y] = stored ? spectrum.im[from] : -spectrum.im[from];
+      im[x + nx * y] = stored ? -spectrum.im[from] : spectrum.im[from];
     }
   }
   fft(-1, ndarray(re, [ny, nx]), ndarray(im, [ny, nx]));
