@@ -57,6 +57,12 @@ function heliographicName({ stonyhurstLongitudeDeg, stonyhurstLatitudeDeg }: Loc
   return `${ns}${two(stonyhurstLatitudeDeg)}${ew}${two(stonyhurstLongitudeDeg)}`;
 }
 
+/**
+ * A pixel at the threshold T = 3 sigma is in or out by chance: integrated over the crossing, the
+ * variance is T^2 sigma / sqrt(pi) per unit of field, 9 / (2 sqrt pi) sigma^2 for each pixel within one sigma.
+ */
+const EDGE_WEIGHT = 9 / (2 * Math.sqrt(Math.PI));
+
 type Quantities = Partial<Record<QuantityKey, Quantity>>;
 
 /**
@@ -75,7 +81,9 @@ function fluxQuantities(radial: Grid2<'G'>, other: Grid2<'G'>, noise: PatchNoise
     Math.hypot(noiseOf(pixels), 0.5 * (here - there));
   const up = sums.positiveMx;
   const down = sums.negativeMx;
-  const pixels = sums.positivePixels + sums.negativePixels;
+  const upPixels = sums.positivePixels + EDGE_WEIGHT * sums.positiveEdgePixels;
+  const downPixels = sums.negativePixels + EDGE_WEIGHT * sums.negativeEdgePixels;
+  const pixels = upPixels + downPixels;
   const unsigned = up + down;
   const unsignedSigma = sigma(pixels, unsigned, others.positiveMx + others.negativeMx);
   const net = up - down;
@@ -95,13 +103,13 @@ function fluxQuantities(radial: Grid2<'G'>, other: Grid2<'G'>, noise: PatchNoise
     positive_flux: withSigma(
       'positive_flux',
       up,
-      sigma(sums.positivePixels, up, others.positiveMx),
+      sigma(upPixels, up, others.positiveMx),
       'measured',
     ),
     negative_flux: withSigma(
       'negative_flux',
       -down,
-      sigma(sums.negativePixels, down, others.negativeMx),
+      sigma(downPixels, down, others.negativeMx),
       'measured',
     ),
     unsigned_flux: withSigma('unsigned_flux', unsigned, unsignedSigma, 'measured'),
