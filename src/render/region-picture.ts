@@ -2,6 +2,8 @@ import type { InversionLine } from '../field/inversion-line.js';
 import type { RegionFigures } from '../figures/region.js';
 import type { LocalPatch } from '../geometry/patch.js';
 import type { Grid2 } from '../grid/grid.js';
+import { composePicture } from './compose.js';
+import { encodePng, layOver, rasteriseDrawing } from './encode.js';
 
 /** What the picture of one region shows. */
 export interface RegionPicture {
@@ -15,4 +17,17 @@ export interface RegionPicture {
   readonly radialField: Grid2<'G'>;
   readonly currentDensity: Grid2<'mA/m^2'> | undefined;
   readonly inversionLines: readonly InversionLine[];
+}
+
+/**
+ * Draws the picture of one region as PNG bytes: field map with its scale, coordinate grid, inversion
+ * line and current contours, the figures with interval and basis, and the flags. Text is drawn
+ * as outlines, so no installed font is needed; the same input gives the same pixels.
+ */
+export async function renderRegionPicture(picture: RegionPicture): Promise<Uint8Array> {
+  const { drawing, layout, paint } = composePicture(picture);
+  const vectors = rasteriseDrawing(drawing, layout.width, layout.height);
+  const raster = paint();
+  for (const layer of await vectors) layOver(raster, layer);
+  return encodePng(raster);
 }

@@ -1,0 +1,77 @@
+import { type OklchColour, oklchToSrgb } from './oklab.js';
+
+/** Entries of the diverging scale; odd, so that the middle one is exactly neutral. */
+export const COLOUR_COUNT = 511;
+const HALF = (COLOUR_COUNT - 1) / 2;
+
+/** Hues told apart under all common kinds of colour blindness: blue below zero, brown above. */
+const NEGATIVE_HUE_DEG = 252;
+const POSITIVE_HUE_DEG = 50;
+
+const ZERO_LIGHTNESS = 0.965;
+const LIMIT_LIGHTNESS = 0.33;
+const LIMIT_CHROMA = 0.08;
+
+/**
+ * The diverging scale as 3 * COLOUR_COUNT sRGB bytes, from the strongest negative to the strongest
+ * positive value. Both sides run through the same lightness and chroma, in equal steps of OKLab
+ * distance: near white at zero and darkest at the limits, so lightness alone tells strength.
+ */
+export function divergingScale(): Uint8Array {
+  kept ??= buildScale();
+  return kept;
+}
+
+let kept: Uint8Array | undefined;
+
+function buildScale(): Uint8Array {
+  const side = evenSteps(HALF + 1);
+  const bytes = new Uint8Array(3 * COLOUR_COUNT);
+  for (let step = 0; step <= HALF; step++) {
+    const { lightness, chroma } = oneSide(side[step]);
+    writeColour(bytes, HALF - step, { lightness, chroma, hueDeg: NEGATIVE_HUE_DEG });
+    writeColour(bytes, HALF + step, { lightness, chroma, hueDeg: POSITIVE_HUE_DEG });
+  }
+  return bytes;
+}
+
+/** Index in the scale of a value for symmetric limits -limit..limit; values beyond take the ends. */
+export function colourIndex(value: number, limit: number): number {
+  return Math.max(0, Math.min(COLOUR_COUNT - 1, Math.round(HALF + (HALF * value) / limit)));
+}
+
+/** Lightness and chroma at path parameter u, 0 at zero field and 1 at the limit. */
+export function oneSide(u: number): { readonly lightness: number; readonly chroma: number } {
+  return {
+    lightness: ZERO_LIGHTNESS - (ZERO_LIGHTNESS - LIMIT_LIGHTNESS) * u,
+    // Rises as fast from white as the gamut of both hues allows, then falls to the dark end.
+    chroma: LIMIT_CHROMA * u + 0.25 * u * (1 - u) * (1 + 0.3 * u),
+  };
+}
+
+/** Path parameters of `count` points at equal OKLab distance along one side. */
+function evenSteps(count: number): Float64Array {
+  const fine = 2000;
+  const length = new Float64Array(fine + 1);
+  let previous = oneSide(0);
+  for (let i = 1; i <= fine; i++) {
+    const here = oneSide(i / fine);
+    const dL = here.lightness - previous.lightness;
+    length[i] = length[i - 1] + Math.hypot(dL, here.chroma - previous.chroma);
+    previous = here;
+  }
+  const out = new Float64Array(count);
+  for (let i = 0, k = 0; i < count; i++) {
+    const wanted = (length[fine] * i) / (count - 1);
+    while (k < fine - 1 && length[k + 1] < wanted) k++;
+    out[i] = (k + (wanted - length[k]) / (length[k + 1] - length[k])) / fine;
+  }
+  return out;
+}
+
+function writeColour(bytes: Uint8Array, index: number, colour: OklchColour): void {
+  const srgb = oklchToSrgb(colour);
+  for (let part = 0; part < 3; part++) {
+    bytes[3 * index + part] = Math.round(255 * Math.max(0, Math.min(1, srgb[part])));
+  }
+}

@@ -1,0 +1,46 @@
+import { gridStepDeg } from './coordinate-grid.js';
+import { isSupposed } from './figures-table.js';
+import type { LegendEntry } from './legend.js';
+import type { MapContent } from './map-panel.js';
+import { plainNumber, unitText } from './number-format.js';
+import type { RegionPicture } from './region-picture.js';
+
+/** What the legend must explain for this map: only what is drawn, and what is missing. */
+export function legendEntries(picture: RegionPicture, content: MapContent): readonly LegendEntry[] {
+  const step = plainNumber(gridStepDeg(picture.patch, content.frame));
+  return [
+    ...inversionEntries(content),
+    ...currentEntries(picture, content),
+    ...(content.poles.length > 0 ? [entry('poles', 'Strongest outward and inward field')] : []),
+    ...(content.hasMissing ? [entry('hatch', 'No data: missing, or beyond the limb')] : []),
+    entry('grid', `Stonyhurst longitude, latitude: every ${step}°`),
+  ];
+}
+
+function inversionEntries({ inversion }: MapContent): readonly LegendEntry[] {
+  if (inversion.plain.length + inversion.strong.length === 0) {
+    return [entry('none', 'No polarity inversion line found')];
+  }
+  const line = entry('line', 'Polarity inversion line');
+  if (inversion.strong.length === 0) return [line, entry('none', 'No strong-gradient part')];
+  return [line, entry('strong', 'Strong-gradient part of the line')];
+}
+
+function currentEntries(picture: RegionPicture, content: MapContent): readonly LegendEntry[] {
+  if (!content.current) return [entry('none', 'No current map')];
+  const { levels } = content.current;
+  if (levels.length === 0) return [entry('none', 'No electric current in the map')];
+  const basis = picture.region.quantities.peak_current_density?.basis;
+  const supposed = basis !== undefined && isSupposed(basis);
+  const note = supposed ? `, ${basis}` : '';
+  const unit = unitText('mA/m^2');
+  const list = (sign: string) => levels.map((level) => sign + plainNumber(level)).join(', ');
+  return [
+    { sample: 'up', text: `Current density up: ${list('+')} ${unit}${note}`, supposed },
+    { sample: 'down', text: `Current density down: ${list('−')} ${unit}${note}`, supposed },
+  ];
+}
+
+function entry(sample: LegendEntry['sample'], text: string): LegendEntry {
+  return { sample, text, supposed: false };
+}
