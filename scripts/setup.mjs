@@ -1,9 +1,10 @@
 // Makes a fresh clone ready: installs the pinned packages where they are missing or out of step
 // with the lock file, then compiles src/ to dist/. Safe to run again; does nothing twice.
 import { execFileSync, spawnSync } from 'node:child_process';
-import { cpSync, existsSync, readFileSync, rmSync } from 'node:fs';
+import { cpSync, existsSync, readdirSync, readFileSync, rmSync } from 'node:fs';
 import { dirname, join } from 'node:path';
 import { fileURLToPath } from 'node:url';
+import { buildKernels } from './build-kernels.mjs';
 
 const root = join(dirname(fileURLToPath(import.meta.url)), '..');
 
@@ -27,7 +28,15 @@ if (!installed()) {
   });
   if (npm.status !== 0) process.exit(npm.status ?? 1);
 }
-rmSync(join(root, 'dist'), { recursive: true, force: true });
+// Clears dist of what an older build left, but for the compiled kernels, which take long to make.
+const dist = join(root, 'dist');
+if (existsSync(dist)) {
+  for (const entry of readdirSync(dist, { recursive: true, withFileTypes: true })) {
+    const kernel = entry.name.startsWith('fft.wasm');
+    if (!entry.isDirectory() && !kernel) rmSync(join(entry.parentPath ?? entry.path, entry.name));
+  }
+}
+await buildKernels();
 execFileSync(process.execPath, [join(root, 'node_modules/typescript/bin/tsc'), '-p', root], {
   stdio: 'inherit',
 });

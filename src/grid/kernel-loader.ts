@@ -1,0 +1,88 @@
+// Finds and compiles the WebAssembly module of the transforms: the one place in grid that reads a
+// file. The module is made from src/grid/kernel by scripts/build-kernels.mjs.
+import { readFileSync } from 'node:fs';
+
+/** What the module exports; addresses are bytes, see src/grid/kernel. */
+export interface FftExports {
+  readonly setScratch: (a: number, b: number, c: number, odd: number) => void;
+  readonly transformColumns: (
+    plan: number,
+    re: number,
+    im: number,
+    stride: number,
+    ny: number,
+    from: number,
+    to: number,
+    inverse: number,
+  ) => void;
+  readonly forwardEvenRows: (
+    plan: number,
+    nx: number,
+    values: number,
+    turn: number,
+    re: number,
+    im: number,
+    stride: number,
+  ) => void;
+  readonly inverseEvenRows: (
+    plan: number,
+    nx: number,
+    values: number,
+    turn: number,
+    gain: number,
+    re: number,
+    im: number,
+    stride: number,
+  ) => void;
+  readonly forwardOddRows: (
+    plan: number,
+    nx: number,
+    values: number,
+    re: number,
+    im: number,
+    stride: number,
+    count: number,
+  ) => void;
+  readonly inverseOddRows: (
+    plan: number,
+    nx: number,
+    values: number,
+    gain: number,
+    re: number,
+    im: number,
+    stride: number,
+    count: number,
+  ) => void;
+}
+
+/** Beside this file once built; below dist when the sources run as they are (tests). */
+const PLACES = ['./fft.wasm', '../../dist/grid/fft.wasm'];
+
+let compiled: WebAssembly.Module | null | undefined;
+
+/**
+ * The compiled module, or null where it cannot be had: no WebAssembly SIMD, sources not built, or
+ * the portable transform asked for by SPOTJOULE_KERNEL=portable. Compiled once, at the first call.
+ */
+export function kernelModule(): WebAssembly.Module | null {
+  if (compiled === undefined) compiled = compile();
+  return compiled;
+}
+
+function compile(): WebAssembly.Module | null {
+  if (process.env.SPOTJOULE_KERNEL === 'portable') return null;
+  for (const place of PLACES) {
+    const bytes = readIfThere(new URL(place, import.meta.url));
+    if (bytes) return WebAssembly.validate(bytes) ? new WebAssembly.Module(bytes) : null;
+  }
+  return null;
+}
+
+function readIfThere(url: URL): Uint8Array<ArrayBuffer> | undefined {
+  try {
+    return new Uint8Array(readFileSync(url));
+  } catch {
+    // Not built, or not in this place: the caller goes on to the next.
+    return undefined;
+  }
+}
