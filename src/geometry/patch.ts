@@ -23,6 +23,8 @@ export interface LocalPatch {
   readonly ny: number;
   readonly pixelMm: number;
   readonly center: PatchCenter;
+  /** Radius of the sphere the grid lies on [Mm]; the nominal solar radius where absent. */
+  readonly sphereRadiusMm?: number;
   /** What `field` holds: the component along the line of sight, or already the radial one. */
   readonly component: 'line-of-sight' | 'radial';
   readonly field: Grid2<'G'>;
