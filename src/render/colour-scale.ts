@@ -37,7 +37,8 @@ function buildScale(): Uint8Array {
 
 /** Index in the scale of a value for symmetric limits -limit..limit; values beyond take the ends. */
 export function colourIndex(value: number, limit: number): number {
-  return Math.max(0, Math.min(COLOUR_COUNT - 1, Math.round(HALF + (HALF * value) / limit)));
+  const step = Math.min(HALF, Math.round((HALF * Math.abs(value)) / limit));
+  return value < 0 ? HALF - step : HALF + step;
 }
 
 /** Lightness and chroma at path parameter u, 0 at zero field and 1 at the limit. */

@@ -1,10 +1,13 @@
-import { SOLAR_RADIUS_M } from '../constants.js';
 import type { LocalPatch } from '../geometry/patch.js';
-import { METRES_PER_MEGAMETRE, RADIANS_PER_DEGREE } from '../units.js';
+import {
+  patchToStonyhurst,
+  sphereRadiusMm,
+  stonyhurstToPatch,
+} from '../geometry/patch-position.js';
+import { RADIANS_PER_DEGREE, wrapDegrees180 } from '../units.js';
 import { type Drawing, drawLine, drawLines, drawText, styledWidth } from './drawing.js';
 import { type MapFrame, toPatch, toPictureX, toPictureY } from './map-frame.js';
 import { plainNumber } from './number-format.js';
-import { patchToStonyhurst, stonyhurstToPatch } from './patch-coordinates.js';
 import { FRAME_INK, SMALL } from './style.js';
 
 const STEPS_DEG = [0.1, 0.2, 0.5, 1, 2, 5, 10, 15, 30];
@@ -22,8 +25,8 @@ interface Span {
 
 /** Step of the grid in degrees, one for both coordinates, so that the lines stay apart. */
 export function gridStepDeg(patch: LocalPatch, frame: MapFrame): number {
-  const metresPerPx = (patch.nx * patch.pixelMm * METRES_PER_MEGAMETRE) / frame.width;
-  const degreesPerPx = metresPerPx / SOLAR_RADIUS_M / RADIANS_PER_DEGREE;
+  const mmPerPx = (patch.nx * patch.pixelMm) / frame.width;
+  const degreesPerPx = mmPerPx / sphereRadiusMm(patch) / RADIANS_PER_DEGREE;
   const wanted = degreesPerPx * LEAST_SPACING_PX;
   return STEPS_DEG.find((step) => step >= wanted) ?? 30;
 }
@@ -48,7 +51,7 @@ export function drawGridLabels(drawing: Drawing, patch: LocalPatch, frame: MapFr
   const step = gridStepDeg(patch, frame);
   let lastRight = Number.NEGATIVE_INFINITY;
   for (const { at, value } of edgeCrossings(patch, frame, 'lonDeg', step)) {
-    const text = longitudeText(value);
+    const text = longitudeText(wrapDegrees180(value));
     const half = styledWidth(text, SMALL) / 2;
     if (at - half < lastRight + 8) continue;
     lastRight = at + half;
@@ -114,7 +117,10 @@ function emptySpan(): { low: number; high: number } {
 
 function placeAt(patch: LocalPatch, frame: MapFrame, px: number, py: number) {
   const { x, y } = toPatch(frame, px, py);
-  return patchToStonyhurst(patch, x, y);
+  const [lonDeg, latDeg] = patchToStonyhurst(patch, x, y);
+  // Continuous across the far side's meridian: longitudes count on from the patch's centre.
+  const middle = patch.center.stonyhurstLongitudeDeg;
+  return { lonDeg: middle + wrapDegrees180(lonDeg - middle), latDeg };
 }
 
 function multiples(span: Span, step: number): readonly number[] {
@@ -146,7 +152,9 @@ function traceLine(
       along === 'lonDeg'
         ? stonyhurstToPatch(patch, fixed, other)
         : stonyhurstToPatch(patch, other, fixed);
-    const [px, py] = [toPictureX(frame, at.x), toPictureY(frame, at.y)];
+    const [px, py] = at
+      ? [toPictureX(frame, at[0]), toPictureY(frame, at[1])]
+      : [Number.NaN, Number.NaN];
     const near =
       Math.abs(px - frame.x - frame.width / 2) < 2 * frame.width &&
       Math.abs(py - frame.y - frame.height / 2) < 2 * frame.height;

@@ -13,7 +13,7 @@ export interface ContourSet {
 /** Longest side of the grid that contours are traced on; finer detail is not legible. */
 const TRACE_SIDE = 200;
 /** Lines shorter than this are specks. */
-const LEAST_LENGTH_PX = 14;
+const LEAST_LENGTH_PX = 24;
 const LEAST_STEP_PX = 1.6;
 
 /**

@@ -1,19 +1,20 @@
 import { gridStepDeg } from './coordinate-grid.js';
 import { isSupposed } from './figures-table.js';
-import type { LegendEntry } from './legend.js';
+import type { LegendColumns, LegendEntry } from './legend.js';
 import type { MapContent } from './map-panel.js';
 import { plainNumber, unitText } from './number-format.js';
 import type { RegionPicture } from './region-picture.js';
 
 /** What the legend must explain for this map: only what is drawn, and what is missing. */
-export function legendEntries(picture: RegionPicture, content: MapContent): readonly LegendEntry[] {
+export function legendEntries(picture: RegionPicture, content: MapContent): LegendColumns {
   const step = plainNumber(gridStepDeg(picture.patch, content.frame));
   return [
-    ...inversionEntries(content),
-    ...currentEntries(picture, content),
-    ...(content.poles.length > 0 ? [entry('poles', 'Strongest outward and inward field')] : []),
-    ...(content.hasMissing ? [entry('hatch', 'No data: missing, or beyond the limb')] : []),
-    entry('grid', `Stonyhurst longitude, latitude: every ${step}°`),
+    [...inversionEntries(content), ...currentEntries(picture, content)],
+    [
+      ...(content.poles.length > 0 ? [entry('poles', 'Strongest field, both signs')] : []),
+      ...(content.hasMissing ? [entry('hatch', 'No data, or beyond the limb')] : []),
+      entry('grid', `Stonyhurst grid, every ${step}°`),
+    ],
   ];
 }
 
@@ -36,8 +37,8 @@ function currentEntries(picture: RegionPicture, content: MapContent): readonly L
   const unit = unitText('mA/m^2');
   const list = (sign: string) => levels.map((level) => sign + plainNumber(level)).join(', ');
   return [
-    { sample: 'up', text: `Current density up: ${list('+')} ${unit}${note}`, supposed },
-    { sample: 'down', text: `Current density down: ${list('−')} ${unit}${note}`, supposed },
+    { sample: 'up', text: `Current up ${list('+')} ${unit}${note}`, supposed },
+    { sample: 'down', text: `Current down ${list('−')} ${unit}${note}`, supposed },
   ];
 }
 

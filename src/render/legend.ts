@@ -14,59 +14,65 @@ export interface LegendEntry {
   readonly supposed: boolean;
 }
 
-const SAMPLE_WIDTH = 40;
-const TEXT_LEFT = SAMPLE_WIDTH + 10;
+/** Entries of the wider first and the narrower second column. */
+export type LegendColumns = readonly [readonly LegendEntry[], readonly LegendEntry[]];
+
+/** A column as placed: its left edge from the legend's, and its width. */
+interface PlacedColumn {
+  readonly entries: readonly LegendEntry[];
+  readonly x: number;
+  readonly width: number;
+}
+
+const SAMPLE_WIDTH = 36;
+const TEXT_LEFT = SAMPLE_WIDTH + 9;
 const LINE = 16;
 const ENTRY_GAP = 5;
-const COLUMN_GAP = 20;
-/** From this width up the legend stands in two columns. */
-const TWO_COLUMNS_FROM = 520;
+const COLUMN_GAP = 18;
+/** From this width up the two columns stand side by side, below it one under the other. */
+const TWO_COLUMNS_FROM = 420;
+const FIRST_SHARE = 0.56;
 
 /** Height of the legend at this width. */
-export function legendHeight(entries: readonly LegendEntry[], width: number): number {
-  return Math.max(...columnsOf(entries, width).map((column) => columnHeight(column, width)));
+export function legendHeight(columns: LegendColumns, width: number): number {
+  return Math.max(...placeColumns(columns, width).map(columnHeight));
 }
 
 /** Draws the entries in one or two columns. */
-export function drawLegend(canvas: Canvas, box: Rect, entries: readonly LegendEntry[]): void {
-  columnsOf(entries, box.width).forEach((column, i) => {
-    const x = box.x + i * (columnWidth(box.width) + COLUMN_GAP);
+export function drawLegend(canvas: Canvas, box: Rect, columns: LegendColumns): void {
+  for (const column of placeColumns(columns, box.width)) {
+    const x = box.x + column.x;
     let y = box.y;
-    for (const entry of column) {
+    for (const entry of column.entries) {
       drawSample(canvas, entry.sample, x, y + 7);
-      const lines = entryLines(entry, box.width);
+      const lines = entryLines(entry, column.width);
       const style = entry.supposed ? SMALL_PRIOR : SMALL;
       lines.forEach((line, k) => {
         drawText(canvas.drawing, line, x + textLeft(entry), y + 12 + LINE * k, style);
       });
       y += LINE * lines.length + ENTRY_GAP;
     }
-  });
+  }
 }
 
-function columnWidth(width: number): number {
-  return width >= TWO_COLUMNS_FROM ? (width - COLUMN_GAP) / 2 : width;
+function placeColumns(columns: LegendColumns, width: number): readonly PlacedColumn[] {
+  if (width < TWO_COLUMNS_FROM) return [{ entries: columns.flat(), x: 0, width }];
+  const first = Math.round(FIRST_SHARE * (width - COLUMN_GAP));
+  const x = first + COLUMN_GAP;
+  return [
+    { entries: columns[0], x: 0, width: first },
+    { entries: columns[1], x, width: width - x },
+  ];
 }
 
-function columnsOf(
-  entries: readonly LegendEntry[],
-  width: number,
-): readonly (readonly LegendEntry[])[] {
-  if (width < TWO_COLUMNS_FROM) return [entries];
-  const first = Math.ceil(entries.length / 2);
-  return [entries.slice(0, first), entries.slice(first)];
-}
-
-function columnHeight(column: readonly LegendEntry[], width: number): number {
-  return column.reduce(
-    (sum, entry) => sum + LINE * entryLines(entry, width).length + ENTRY_GAP,
-    -ENTRY_GAP,
-  );
+function columnHeight({ entries, width }: PlacedColumn): number {
+  const lines = entries.reduce((sum, entry) => sum + entryLines(entry, width).length, 0);
+  return LINE * lines + ENTRY_GAP * (entries.length - 1);
 }
 
 function entryLines(entry: LegendEntry, width: number): readonly string[] {
   // Slanted text leans out of its box by a few pixels.
-  return wrapText(entry.text, columnWidth(width) - textLeft(entry) - 4, SMALL, 4);
+  return wrapText(entry.text, width - textLeft(entry) - 4, SMALL, 4);
 }
 
 function textLeft(entry: LegendEntry): number {
@@ -74,7 +80,7 @@ function textLeft(entry: LegendEntry): number {
 }
 
 function drawSample({ drawing, paints }: Canvas, sample: LegendSample, x: number, y: number): void {
-  const wave = [[x, y + 4, x + 13, y - 2, x + 27, y + 2, x + SAMPLE_WIDTH, y - 4]];
+  const wave = [[x, y + 4, x + 12, y - 2, x + 24, y + 2, x + SAMPLE_WIDTH, y - 4]];
   const flat = [[x, y, x + SAMPLE_WIDTH, y]];
   if (sample === 'line') drawPlainLine(drawing, wave);
   if (sample === 'strong') drawStrongLine(drawing, wave);
@@ -82,8 +88,8 @@ function drawSample({ drawing, paints }: Canvas, sample: LegendSample, x: number
   if (sample === 'down') drawCurrentLine(drawing, flat, -1, true);
   if (sample === 'grid') drawLines(drawing, flat, FRAME_INK, 0.8, { 'stroke-opacity': 0.6 });
   if (sample === 'poles') {
-    drawPoleSign(drawing, x + 10, y, 1);
-    drawPoleSign(drawing, x + 30, y, -1);
+    drawPoleSign(drawing, x + 8, y, 1);
+    drawPoleSign(drawing, x + 28, y, -1);
   }
   if (sample === 'hatch') {
     const box = { x: Math.round(x), y: Math.round(y - 6), width: SAMPLE_WIDTH, height: 13 };

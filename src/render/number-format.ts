@@ -41,7 +41,8 @@ export function unitText(unit: string): string {
  * Formats a figure with its interval. The power of ten is a multiple of 3 and is left out for sizes
  * from 0.001 to 99 999. The last digit kept is the second significant digit of half the interval,
  * within 2 to 4 significant digits of the value (3 without an interval); value and interval are
- * rounded at the same digit. Null or non-finite values give "—".
+ * rounded at the same digit; an end of the interval that is not zero is not rounded to it while
+ * four digits allow. Null or non-finite values give "—".
  */
 export function quantityText(quantity: Quantity): QuantityText {
   const { value, low, high } = quantity;
@@ -55,8 +56,8 @@ export function quantityText(quantity: Quantity): QuantityText {
     value !== 0 ? value : Math.max(-(bounded?.low ?? 0), bounded?.high ?? 0),
   );
   const scale = 10 ** power;
-  const halfWidth = bounded ? (bounded.high - bounded.low) / 2 / scale : 0;
-  const decimals = decimalPlaces(value / scale, halfWidth);
+  const ends = bounded ?? { low: value, high: value };
+  const decimals = decimalPlaces(value / scale, ends.low / scale, ends.high / scale);
   const write = (number: number) => fixed(number / scale, decimals);
   return {
     value: write(value),
@@ -70,7 +71,7 @@ export function numberText(value: number, unit: string, digits = 3): string {
   if (!Number.isFinite(value)) return '—';
   const power = sharedPower(value);
   const scaled = value / 10 ** power;
-  const number = fixed(scaled, digits - 1 - exponent(scaled));
+  const number = fixed(scaled, value === 0 ? 0 : digits - 1 - exponent(scaled));
   const scale = power === 0 ? '' : `× 10${superscript(power)}`;
   return [number, scale, unitText(unit)].filter(Boolean).join(' ');
 }
@@ -91,14 +92,17 @@ function exponent(value: number): number {
   return value === 0 ? 0 : Number(Math.abs(value).toExponential(9).split('e')[1]);
 }
 
-function decimalPlaces(value: number, halfWidth: number): number {
+function decimalPlaces(value: number, low: number, high: number): number {
+  const halfWidth = (high - low) / 2;
   if (!(halfWidth > 0)) return value === 0 ? 0 : 2 - exponent(value);
   const byInterval = 1 - exponent(halfWidth);
-  const most = 3 - exponent(value);
-  const least = Math.min(1 - exponent(value), most);
+  const spansZero = low <= 0 && high >= 0;
   // A value lost in its own interval (net flux near zero) is cut where the interval says.
-  if (Math.abs(value) < halfWidth) return Math.min(byInterval, 3 - exponent(halfWidth));
-  return Math.max(least, Math.min(most, byInterval));
+  if (value === 0 || (spansZero && Math.abs(value) < halfWidth)) return byInterval;
+  const least = 1 - exponent(value);
+  // The end nearer to zero must not round to zero, which would claim too much.
+  const byNearEnd = spansZero ? least : -exponent(Math.min(Math.abs(low), Math.abs(high)));
+  return Math.min(3 - exponent(value), Math.max(byInterval, least, byNearEnd));
 }
 
 /** Rounds at 10^-decimals (may be negative) and writes without an exponent, thousands apart. */

@@ -7,7 +7,7 @@ export const LINE_HEIGHT = 18;
 const INK = '#1b1f24';
 const QUIET_INK = '#57606a';
 /** For figures that rest on a prior or an assumption. */
-const PRIOR_INK = '#6a6fa0';
+const PRIOR_INK = '#5f6499';
 
 export const INVERSION_INK = '#111111';
 export const STRONG_CORE = '#ffe14d';

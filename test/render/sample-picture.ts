@@ -94,3 +94,23 @@ export function samplePicture(
     ...change,
   };
 }
+
+/** A picture without analysis, for shapes and sizes an analysis would take long over. */
+export function barePicture(
+  options: SampleOptions,
+  change: Partial<RegionPicture> = {},
+): RegionPicture {
+  const patch = samplePatch(options);
+  const { nx, ny, pixelMm, center } = patch;
+  return {
+    source: 'marrow-hill-20310504-120000.fits',
+    observed: '2031-05-04T12:00:00.000Z',
+    toolVersion: '0.1.0',
+    region: { id: 'MH-2', center, patch: { nx, ny, pixelMm }, quantities: {}, flags: [] },
+    patch,
+    radialField: patch.field,
+    currentDensity: undefined,
+    inversionLines: [],
+    ...change,
+  };
+}
