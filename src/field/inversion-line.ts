@@ -26,7 +26,7 @@ export const STRONG_HORIZONTAL_G = 150;
 /** Gradient that a strong line must reach [G/Mm]: Falconer, Moore & Gary 2003, JGR 108, 1380 (from memory). */
 export const STRONG_GRADIENT_G_PER_MM = 50;
 /** Below this horizontal field a zero crossing is quiet-Sun salt and pepper, no line of a region [G]. */
-export const LEAST_HORIZONTAL_G = 50;
+export const LEAST_HORIZONTAL_G = 100;
 /** The field is smoothed to this width before its zero line is drawn [Mm], or to 1.5 pixels. */
 export const SMOOTHING_WIDTH_MM = 1.5;
 
