@@ -21,9 +21,9 @@ export function layOver(raster: Raster, layer: Uint8Array): void {
     const alpha = layer[from + 3];
     if (alpha === 0) continue;
     const rest = 255 - alpha;
-    for (let part = 0; part < 3; part++) {
-      rgb[to + part] = (layer[from + part] * alpha + rgb[to + part] * rest + 127) / 255;
-    }
+    rgb[to] = (layer[from] * alpha + rgb[to] * rest + 127) / 255;
+    rgb[to + 1] = (layer[from + 1] * alpha + rgb[to + 1] * rest + 127) / 255;
+    rgb[to + 2] = (layer[from + 2] * alpha + rgb[to + 2] * rest + 127) / 255;
   }
 }
 

@@ -40,6 +40,7 @@ export function paintMap(
   samples: Float64Array,
   limit: number,
 ): void {
+  const { rgb } = raster;
   const scale = divergingScale();
   for (let row = 0; row < frame.height; row++) {
     const from = frame.width * (frame.height - 1 - row);
@@ -47,13 +48,13 @@ export function paintMap(
     for (let column = 0; column < frame.width; column++, to += 3) {
       const value = samples[from + column];
       if (Number.isNaN(value)) {
-        raster.rgb.fill(hatchGrey(column, row), to, to + 3);
+        rgb.fill(hatchGrey(column, row), to, to + 3);
         continue;
       }
       const colour = 3 * colourIndex(value, limit);
-      raster.rgb[to] = scale[colour];
-      raster.rgb[to + 1] = scale[colour + 1];
-      raster.rgb[to + 2] = scale[colour + 2];
+      rgb[to] = scale[colour];
+      rgb[to + 1] = scale[colour + 1];
+      rgb[to + 2] = scale[colour + 2];
     }
   }
 }

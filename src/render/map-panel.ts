@@ -38,7 +38,7 @@ export function mapContent(picture: RegionPicture, frame: MapFrame): MapContent 
     frame,
     samples,
     limit,
-    hasMissing: samples.some(Number.isNaN),
+    hasMissing: samples.includes(Number.NaN),
     poles: strongestPoles(samples, frame, limit),
     inversion: inversionPaths(picture.inversionLines, frame),
     current,
