@@ -111,6 +111,16 @@ function referenceRadius(header: FitsHeader): number | undefined {
   );
 }
 
+/** Radius in metres that a stated distance and angular radius imply, where they agree on one Sun. */
+function impliedRadius(
+  stated: number | undefined,
+  angularRadius: number | undefined,
+): number | undefined {
+  if (stated === undefined || angularRadius === undefined) return undefined;
+  const radiusM = stated * Math.sin(angularRadius);
+  return Math.abs(radiusM / SOLAR_RADIUS_M - 1) <= RADIUS_TOLERANCE ? radiusM : undefined;
+}
+
 /**
  * Distance of the observer. Where a stated distance contradicts the stated angular radius, the radius
  * wins: it is measured or computed per picture, a distance of exactly 1 au is a placeholder.
@@ -149,10 +159,10 @@ export function readObserver(
     if (dateIso !== undefined) earth ??= sunFromEarth(dateIso);
     return earth;
   };
-  const namedRadius = referenceRadius(header);
-  const solarRadiusM = namedRadius ?? SOLAR_RADIUS_M;
   const angularRadius = numbers(header, RADIUS_KEYWORDS, radians);
   const stated = numbers(header, DISTANCE_KEYWORDS, metres);
+  const namedRadius = referenceRadius(header) ?? impliedRadius(stated, angularRadius);
+  const solarRadiusM = namedRadius ?? SOLAR_RADIUS_M;
   const headerDistance = resolveDistance(stated, angularRadius, solarRadiusM, warnings);
   const headerLatitude = numbers(header, LATITUDE_KEYWORDS, latitude);
   const distanceM = headerDistance ?? fromEarth()?.distanceM;

@@ -20,6 +20,8 @@ const DEVIATION_PER_MEDIAN = 1.4826;
 /** Free border around the region: this part of its box on every side, so that the field can close. */
 const MARGIN = 0.25;
 const SMALLEST_MM = 80;
+/** A patch has at least this many pixels of the map a side, so that a coarse map still gives one. */
+const LEAST_MAP_PIXELS = 16;
 const LARGEST_MM = 500;
 /** Regions that join to more than LARGEST_MM are parted by raising the threshold this much at a time. */
 const THRESHOLD_STEP = 1.3;
@@ -105,15 +107,16 @@ function extentOf(map: SolarMap, coarse: CoarseMap, members: readonly number[]):
   return extentOfPoints(view, points, map.observer.solarRadiusM / METRES_PER_MEGAMETRE);
 }
 
-function withMargin(sideMm: number): number {
-  return Math.min(LARGEST_MM, Math.max(SMALLEST_MM, sideMm * (1 + 2 * MARGIN)));
+function withMargin(sideMm: number, pixelMm: number): number {
+  const least = Math.max(SMALLEST_MM, LEAST_MAP_PIXELS * pixelMm);
+  return Math.min(LARGEST_MM, Math.max(least, sideMm * (1 + 2 * MARGIN)));
 }
 
 /**
  * The region of greatest unsigned flux within `withinDeg` (60) degrees of disk centre: the field's size
  * on a coarse grid, each cell without its strongest pixel so that a lone spike does not count, blurred
  * by 8 Mm; cells 6 robust deviations above the quiet median, joined to areas; flux with field and area
- * corrected by mu. The extent is the area's box with a quarter added on every side, 80 to 500 Mm. Where
+ * corrected by mu. The extent is the area's box with a quarter added on every side, 80 Mm and 16 map pixels at least, 500 Mm at most. Where
  * nothing stands out, the strongest cell with a warning. Throws DataError where there is no value.
  */
 export function strongestRegion(
@@ -148,5 +151,6 @@ export function strongestRegion(
     warnings.push('no region stands out from the quiet Sun: the strongest place is taken');
   }
   const { x, y } = best.extentMm;
-  return { center: best.center, extentMm: { x: withMargin(x), y: withMargin(y) }, warnings };
+  const extentMm = { x: withMargin(x, map.pixelMm), y: withMargin(y, map.pixelMm) };
+  return { center: best.center, extentMm, warnings };
 }

@@ -37,7 +37,7 @@ function reading(
   scale: string | undefined,
 ): ClockReading | undefined {
   const [year, month, day] = date.map(Number);
-  const [hours, minutes, seconds] = clock.map((part) => Number(part ?? 0));
+  const [hours, minutes, seconds] = [0, 1, 2].map((i) => Number(clock[i] ?? 0));
   const isDate = year >= 1850 && year <= 2200 && month >= 1 && month <= 12 && day >= 1;
   if (!isDate || day > new Date(Date.UTC(year, month, 0)).getUTCDate()) return undefined;
   if (hours > 24 || minutes > 59 || seconds >= 61) return undefined;
@@ -54,7 +54,7 @@ function readClock(text: string): ClockReading | undefined {
     return reading([named[3], month, named[1]], named.slice(4, 7), named[7]);
   }
   const old = OLD_FITS.exec(text);
-  return old ? reading([`19${old[3]}`, old[2], old[1]], [undefined], undefined) : undefined;
+  return old ? reading([`19${old[3]}`, old[2], old[1]], [], undefined) : undefined;
 }
 
 function toIso(read: ClockReading, headerScale: string | undefined): string {
