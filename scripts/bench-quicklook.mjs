@@ -8,7 +8,7 @@ import { existsSync, mkdtempSync, readFileSync, rmSync, writeFileSync } from 'no
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
-import { observe, skyPosition } from './marrow-hill.mjs';
+import { observe, REGIONS, skyPosition } from './marrow-hill.mjs';
 
 const ROOT = fileURLToPath(new URL('..', import.meta.url));
 const MAIN = join(ROOT, 'dist', 'cli', 'main.js');
@@ -49,10 +49,10 @@ const cutout = join(folder, 'mh-1-512.fits');
 writeFileSync(
   cutout,
   observe({
-    names: ['MH-1'],
+    regions: [REGIONS['MH-1']],
     n: 512,
     arcsec: 0.5,
-    centerArcsec: skyPosition('MH-1'),
+    centerArcsec: skyPosition(REGIONS['MH-1']),
     noiseG: 10,
     seed: 1,
     object: 'MH-1',
@@ -62,7 +62,7 @@ const disk = join(folder, 'full-disk-4096.fits');
 writeFileSync(
   disk,
   observe({
-    names: ['MH-1', 'MH-2', 'MH-3'],
+    regions: Object.values(REGIONS),
     n: 4096,
     arcsec: 0.5,
     centerArcsec: [0, 0],

@@ -16,7 +16,7 @@ const OBSERVER = { distanceMm: 1.0109 * AU_MM, b0: -2.71 * DEG, l0Deg: 143.24 };
 const DATE = '2031-05-14T08:00:00';
 
 /** Charges [G Mm^2] at x west, y north and depth [Mm] of each region's centre. */
-const REGIONS = {
+export const REGIONS = {
   'MH-1': {
     lonDeg: 12,
     latDeg: -18,
@@ -71,10 +71,9 @@ function localAxes(lonDeg, latDeg) {
   return { west, north: cross(up, west), up };
 }
 
-/** Charges of the named regions as [strength, place in the observer's axes]. */
-function placeCharges(names) {
-  return names.flatMap((name) => {
-    const { lonDeg, latDeg, charges } = REGIONS[name];
+/** Charges of regions as [strength, place in the observer's axes]. */
+function placeCharges(regions) {
+  return regions.flatMap(({ lonDeg, latDeg, charges }) => {
     const { west, north, up } = localAxes(lonDeg, latDeg);
     return charges.map(([strength, x, y, depth]) => [
       strength,
@@ -119,8 +118,8 @@ const SCALE_G = 0.1;
 /**
  * A map in steps of 0.1 G, int16 or (`wide`) int32, its header in the words of FITS 4.0 and Thompson (2006).
  */
-export function observe({ names, n, arcsec, centerArcsec, noiseG, seed, object, wide = false }) {
-  const charges = placeCharges(names);
+export function observe({ regions, n, arcsec, centerArcsec, noiseG, seed, object, wide = false }) {
+  const charges = placeCharges(regions);
   const random = normalNoise(seed);
   const crpix = centerArcsec.map((at) => n / 2 + 0.5 - at / arcsec);
   const values = new (wide ? Int32Array : Int16Array)(n * n);
@@ -165,8 +164,7 @@ export function observe({ names, n, arcsec, centerArcsec, noiseG, seed, object, 
 }
 
 /** Helioprojective position of a region's centre [arcsec]. */
-export function skyPosition(name) {
-  const { lonDeg, latDeg } = REGIONS[name];
+export function skyPosition({ lonDeg, latDeg }) {
   const p = scale(localAxes(lonDeg, latDeg).up, RADIUS_MM);
   const toObserver = OBSERVER.distanceMm - p[2];
   return [Math.atan2(p[0], toObserver), Math.atan2(p[1], toObserver)].map((at) =>
@@ -177,8 +175,8 @@ export function skyPosition(name) {
 /** The files of the station: name and bytes. */
 export function marrowHillFiles() {
   const cutout = {
-    names: ['MH-1'],
-    centerArcsec: skyPosition('MH-1'),
+    regions: [REGIONS['MH-1']],
+    centerArcsec: skyPosition(REGIONS['MH-1']),
     noiseG: 8,
     seed: 2031,
     object: 'MH-1',
@@ -187,7 +185,7 @@ export function marrowHillFiles() {
     'mh-1-20310514.fits': observe({ ...cutout, n: 256, arcsec: 1 }),
     'mh-1-20310514-small.fits': observe({ ...cutout, n: 96, arcsec: 2.5 }),
     'full-disk-20310514.fits': observe({
-      names: ['MH-1', 'MH-2', 'MH-3'],
+      regions: Object.values(REGIONS),
       n: 384,
       arcsec: 5.2,
       centerArcsec: [0, 0],

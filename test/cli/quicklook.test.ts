@@ -8,7 +8,7 @@ import {
   writeFileSync,
 } from 'node:fs';
 import { join } from 'node:path';
-import Ajv2020 from 'ajv/dist/2020.js';
+import { Ajv2020 } from 'ajv/dist/2020.js';
 import sharp from 'sharp';
 import { describe, expect, it } from 'vitest';
 import { QUANTITY_KEYS } from '../../src/figures/quantity.js';
