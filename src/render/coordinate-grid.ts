@@ -85,9 +85,10 @@ function directionText(
   decimals: number | undefined,
 ): string {
   const rounded = Number(degrees.toFixed(decimals ?? 2));
-  const letter = rounded === 0 ? '' : rounded > 0 ? positive : negative;
+  const letter = degrees < 0 ? negative : positive;
   const size = Math.abs(rounded);
-  return `${letter}${decimals === undefined ? plainNumber(size) : size.toFixed(decimals)}°`;
+  if (decimals !== undefined) return `${letter}${size.toFixed(decimals)}°`;
+  return `${rounded === 0 ? '' : letter}${plainNumber(size)}°`;
 }
 
 function coordinateSpans(patch: LocalPatch, frame: MapFrame): Record<Coordinate, Span> {

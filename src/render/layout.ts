@@ -49,17 +49,18 @@ const GAP = 16;
 const COLUMN_GAP = 28;
 const TOP = MARGIN + TITLE_HEIGHT + 14;
 
-/** Arranges the parts by the shape of the map: wider than 2.1 : 1, taller than 1 : 2, or between. */
+/** Arranges the parts by the shape of the map: wider than 3 : 1, taller than 1 : 2, or between. */
 export function arrange(needs: LayoutNeeds): Layout {
   const aspect = needs.nx / needs.ny;
-  if (aspect > 2.1) return arrangeWide(needs);
+  if (aspect > 3) return arrangeWide(needs);
   if (aspect < 0.5) return arrangeTall(needs);
   return arrangeSquare(needs);
 }
 
 /** Map with its colour bar below, table and flags at the right, the legend where it costs least. */
 function arrangeSquare(needs: LayoutNeeds): Layout {
-  const size = mapSize(needs.nx, needs.ny, 640, 640);
+  const boxWidth = needs.nx > 1.4 * needs.ny ? 720 : 640;
+  const size = mapSize(needs.nx, needs.ny, boxWidth, 640);
   const mapArea = placeMap(MARGIN, TOP, size, needs);
   const column = Math.max(size.width, needs.marksWidth(size.width), 440);
   const x = MARGIN + AXIS_LEFT;
@@ -90,7 +91,7 @@ function arrangeTall(needs: LayoutNeeds): Layout {
 
 /** Map over the full width; colour bar beside the legend, then both halves of the table. */
 function arrangeWide(needs: LayoutNeeds): Layout {
-  const size = mapSize(needs.nx, needs.ny, 1130, 480);
+  const size = mapSize(needs.nx, needs.ny, 1130, 320);
   const mapArea = placeMap(MARGIN, TOP, size, needs);
   const tables = 2 * needs.tableWidth + COLUMN_GAP + 12;
   const inner = Math.max(tables, AXIS_LEFT + size.width + AXIS_RIGHT);

@@ -8,7 +8,7 @@ import {
   longitudeText,
 } from '../../src/render/coordinate-grid.js';
 import { newDrawing } from '../../src/render/drawing.js';
-import { samplePatch } from './sample-picture.js';
+import { samplePatch } from './sample-patch.js';
 
 const RADIUS_MM = SOLAR_RADIUS_M / 1e6;
 
@@ -84,5 +84,6 @@ describe('coordinate labels', () => {
     expect(longitudeText(0)).toBe('0°');
     expect(latitudeText(-0.5)).toBe('S0.5°');
     expect(latitudeText(12, 1)).toBe('N12.0°');
+    expect(longitudeText(-0.01, 1)).toBe('E0.0°');
   });
 });

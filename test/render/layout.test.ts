@@ -4,7 +4,8 @@ import { composePicture } from '../../src/render/compose.js';
 import type { Rect } from '../../src/render/drawing.js';
 import type { Layout } from '../../src/render/layout.js';
 import type { RegionPicture } from '../../src/render/region-picture.js';
-import { BIPOLE_SPOTS, barePicture, samplePicture } from './sample-picture.js';
+import { BIPOLE_SPOTS, barePicture } from './sample-patch.js';
+import { samplePicture } from './sample-picture.js';
 
 const LONG_FLAG = `${'a flag that says much more than anyone wants to read, '.repeat(30)}${'x'.repeat(900)}`;
 

@@ -11,7 +11,8 @@ import { composePicture } from '../../src/render/compose.js';
 import { type Rect, shapesSvg, textSvg } from '../../src/render/drawing.js';
 import { fieldLimit } from '../../src/render/map-layer.js';
 import { type RegionPicture, renderRegionPicture } from '../../src/render/region-picture.js';
-import { BIPOLE_SPOTS, barePicture, samplePicture } from './sample-picture.js';
+import { BIPOLE_SPOTS, barePicture, filledPicture } from './sample-patch.js';
+import { samplePicture } from './sample-picture.js';
 
 const root = fileURLToPath(new URL('../..', import.meta.url));
 
@@ -302,7 +303,7 @@ describe('what is written', () => {
 describe('the whole picture', () => {
   let folder: string;
   let bundle: string;
-  const inProcess = samplePicture({ nx: 96, ny: 96, spots: BIPOLE_SPOTS });
+  const inProcess = filledPicture({ nx: 96, ny: 96, spots: BIPOLE_SPOTS });
 
   beforeAll(async () => {
     // Inside node_modules, so that the bundle finds the packages it leaves out.
