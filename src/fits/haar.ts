@@ -82,8 +82,8 @@ function invertLevel(
         const low = bitOf(hc, unit) * unit;
         let hx = roundTo(a[top + x], unit2);
         let hy = roundTo(a[bottom + x + 1], unit2);
-        hx = hx >= 0 ? hx + low : hx - low;
-        hy = hy >= 0 ? hy + low : hy - low;
+        hx = hx >= 0 ? hx - low : hx + low;
+        hy = hy >= 0 ? hy - low : hy + low;
         const odd = bitOf(hc, unit2) + bitOf(hx, unit2) + bitOf(hy, unit2);
         const middle = (odd & 1) * unit2;
         if (h0 >= 0) h0 += low - middle;
