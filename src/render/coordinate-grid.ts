@@ -12,7 +12,7 @@ import { FRAME_INK, SMALL } from './style.js';
 
 const STEPS_DEG = [0.1, 0.2, 0.5, 1, 2, 5, 10, 15, 30];
 /** Lines stand at least this far apart in the picture. */
-const LEAST_SPACING_PX = 62;
+const LEAST_SPACING_PX = 46;
 const POINTS_PER_LINE = 48;
 
 type Coordinate = 'lonDeg' | 'latDeg';

@@ -38,7 +38,7 @@ describe('coordinate labels', () => {
   it('stand where the equal-area frame about the disk centre puts them', () => {
     const { centre, patch, frame } = scene(640, 600, 0, 0);
     const step = gridStepDeg(patch, frame);
-    expect(step).toBe(10);
+    expect(step).toBe(5);
     const degrees = Math.PI / 180;
     expect(centre('W10°').x).toBeCloseTo(100 + 320 + RADIUS_MM * 10 * degrees, 0);
     expect(centre('E20°').x).toBeCloseTo(100 + 320 - RADIUS_MM * 20 * degrees, 0);
