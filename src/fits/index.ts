@@ -13,3 +13,4 @@ export {
 } from './header.js';
 export { type FitsImage, readImage } from './image.js';
 export { DEFAULT_LIMITS, type FitsLimits } from './limits.js';
+export { type WritableHdu, type WritableValues, writeFits } from './write.js';
