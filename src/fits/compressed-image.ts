@@ -11,7 +11,7 @@ import { type TilePart, tilesOfPlane, tilingOf } from './tiling.js';
 
 /**
  * Unpacks the tiles of a compressed image that plane `plane` passes through into `values`, as
- * physical values (Standard 4.0, chapter 10). Throws FitsError, naming tile and codec, when a tile
+ * physical values (Standard 4.0, chapter 10), and counts the missing ones. Throws FitsError, naming tile and codec, when a tile
  * is damaged or does not fit its place.
  */
 export function readTiles(
@@ -21,7 +21,7 @@ export function readTiles(
   scaling: Scaling,
   values: ImageValues,
   warnings: string[],
-): void {
+): number {
   const context = { file: file.name, hdu: hdu.index };
   const header = hdu.tableHeader ?? hdu.header;
   const table = openTable(file.bytes, header, hdu.dataOffset, hdu.dataLength, context);
@@ -37,13 +37,15 @@ export function readTiles(
   const rules = quantisationRules(hdu, header, table, context);
   const scratch = makeScratch(tilePixels, hdu.bitpix);
   checkUnused(header, warnings);
+  let missing = 0;
   for (const tile of tilesOfPlane(tiling, plane)) {
     const kind = decodeTile(table, tile, codec, scratch);
     if (kind === 'integers' && hdu.bitpix < 0) {
       dequantise(scratch.integers, tile.pixels, tile.row, rules(tile.row), scratch.floats);
     }
-    placeTile(scratch, kind, tile, hdu, scaling, values);
+    missing += placeTile(scratch, kind, tile, hdu, scaling, values);
   }
+  return missing;
 }
 
 function codecOf(hdu: FitsHdu, header: FitsHeader, table: BinaryTable): TileCodec {
@@ -123,7 +125,7 @@ function ditherMode(header: FitsHeader, context: ErrorContext): DitherMode {
   });
 }
 
-/** Copies the plane's part of a tile, row by row, to its place, applying BSCALE, BZERO and BLANK. */
+/** Copies the plane's part of a tile to its place, applying BSCALE, BZERO and BLANK; counts the missing. */
 function placeTile(
   scratch: TileScratch,
   kind: 'integers' | 'floats' | 'big',
@@ -131,17 +133,19 @@ function placeTile(
   hdu: FitsHdu,
   scaling: Scaling,
   values: ImageValues,
-): void {
+): number {
   const [width, height] = tile.lengths;
+  let missing = 0;
   for (let y = 0; y < height; y++) {
     const from = tile.start + y * width;
     const at = tile.x + hdu.shape[0] * (tile.y + y);
     if (kind === 'big' && scratch.big !== undefined) {
-      scaleInt64(scratch.big, 8 * from, width, scaling, values, at);
+      missing += scaleInt64(scratch.big, 8 * from, width, scaling, values, at);
     } else if (hdu.bitpix < 0) {
-      scaleFloats(scratch.floats, from, width, scaling, values, at);
+      missing += scaleFloats(scratch.floats, from, width, scaling, values, at);
     } else {
-      scaleIntegers(scratch.integers, from, width, scaling, values, at);
+      missing += scaleIntegers(scratch.integers, from, width, scaling, values, at);
     }
   }
+  return missing;
 }

@@ -46,12 +46,11 @@ export function readImage(
   const warnings: string[] = [];
   const scaling = scalingOf(hdu.header, hdu.bitpix, warnings);
   const values = makeValues(nx * ny, hdu.bitpix, scaling);
-  if (hdu.kind === 'image') {
-    const start = hdu.dataOffset + plane * nx * ny * (Math.abs(hdu.bitpix) / 8);
-    scalePixels(file.bytes, start, nx * ny, hdu.bitpix, scaling, values, 0);
-  } else {
-    readTiles(file, hdu, plane, scaling, values, warnings);
-  }
+  const start = hdu.dataOffset + plane * nx * ny * (Math.abs(hdu.bitpix) / 8);
+  const missing =
+    hdu.kind === 'image'
+      ? scalePixels(file.bytes, start, nx * ny, hdu.bitpix, scaling, values, 0)
+      : readTiles(file, hdu, plane, scaling, values, warnings);
   return {
     nx,
     ny,
@@ -59,7 +58,7 @@ export function readImage(
     bunit: stringAt(hdu.header, 'BUNIT'),
     header: hdu.header,
     hdu: hduIndex,
-    missing: countMissing(values),
+    missing,
     warnings,
   };
 }
@@ -97,14 +96,4 @@ function choosePlane(hdu: FitsHdu, asked: number | undefined, context: ErrorCont
     throw new FitsError(`no plane ${plane} in ${size}, 0 to ${planes - 1} wanted`, context);
   }
   return plane;
-}
-
-function countMissing(values: ImageValues): number {
-  let missing = 0;
-  for (let i = 0; i < values.length; i++) {
-    // NaN alone differs from itself
-    // biome-ignore lint/suspicious/noSelfCompare: faster here than Number.isNaN
-    if (values[i] !== values[i]) missing++;
-  }
-  return missing;
 }

@@ -9,7 +9,7 @@ const CHUNK = 4096;
 
 /**
  * Turns `count` big-endian pixels of type `bitpix` at byte `offset` into physical values in `out`
- * from index `at` on. The caller has checked that all of it is there.
+ * from index `at` on, and counts the missing ones. The caller has checked that all of it is there.
  */
 export function scalePixels(
   bytes: Uint8Array,
@@ -19,22 +19,23 @@ export function scalePixels(
   scaling: Scaling,
   out: ImageValues,
   at: number,
-): void {
+): number {
   if (bitpix === 64) {
-    scaleInt64(bytes, offset, count, scaling, out, at);
-    return;
+    return scaleInt64(bytes, offset, count, scaling, out, at);
   }
   const width = Math.abs(bitpix) / 8;
   const chunk = makeStored(Math.min(CHUNK, count), bitpix);
+  let missing = 0;
   for (let done = 0; done < count; done += CHUNK) {
     const some = Math.min(CHUNK, count - done);
     copyBigEndian(bytes, offset + done * width, some, chunk);
     if (chunk instanceof Float32Array || chunk instanceof Float64Array) {
-      scaleFloats(chunk, 0, some, scaling, out, at + done);
+      missing += scaleFloats(chunk, 0, some, scaling, out, at + done);
     } else {
-      scaleIntegers(chunk, 0, some, scaling, out, at + done);
+      missing += scaleIntegers(chunk, 0, some, scaling, out, at + done);
     }
   }
+  return missing;
 }
 
 /** An array that holds pixels of type `bitpix` (not 64). */

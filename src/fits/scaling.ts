@@ -61,7 +61,10 @@ export function makeValues(count: number, bitpix: number, scaling: Scaling): Ima
   return small || (bitpix === -32 && plain) ? new Float32Array(count) : new Float64Array(count);
 }
 
-/** Writes `count` stored integers from `from` on as physical values to `out` from `at` on. */
+/**
+ * Writes `count` stored integers from `from` on as physical values to `out` from `at` on. Returns how
+ * many are missing: counting here saves a second pass over a large picture.
+ */
 export function scaleIntegers(
   stored: Uint8Array | Int16Array | Int32Array,
   from: number,
@@ -69,16 +72,21 @@ export function scaleIntegers(
   scaling: Scaling,
   out: ImageValues,
   at: number,
-): void {
+): number {
   const { bscale, bzero, blank } = scaling;
   if (blank === undefined) {
     for (let i = 0; i < count; i++) out[at + i] = bzero + bscale * stored[from + i];
-    return;
+    return 0;
   }
+  let missing = 0;
   for (let i = 0; i < count; i++) {
     const value = stored[from + i];
-    out[at + i] = value === blank ? Number.NaN : bzero + bscale * value;
+    if (value === blank) {
+      out[at + i] = Number.NaN;
+      missing++;
+    } else out[at + i] = bzero + bscale * value;
   }
+  return missing;
 }
 
 /** The same for floating-point pixels; infinities become NaN, being no value of a field. */
@@ -89,10 +97,14 @@ export function scaleFloats(
   scaling: Scaling,
   out: ImageValues,
   at: number,
-): void {
+): number {
   const { bscale, bzero } = scaling;
+  let missing = 0;
   for (let i = 0; i < count; i++) {
     const value = bzero + bscale * stored[from + i];
-    out[at + i] = value - value === 0 ? value : Number.NaN;
+    const finite = value - value === 0;
+    out[at + i] = finite ? value : Number.NaN;
+    if (!finite) missing++;
   }
+  return missing;
 }
