@@ -193,7 +193,7 @@ def header_cards():
     header = fits.Header()
     header['OBSERVER'] = 'station on Marrow Hill'
     header['QUOTED'] = "it's the 'MH-1' region"
-    header['LONGTEXT'] = ('A long string about region MH-2, ' * 7 + "with 'quotes' and an & inside", 'kept by CONTINUE')
+    header['LONGTEXT'] = ('A long string about region MH-2, ' * 7 + "it's with an & inside", 'kept by CONTINUE')
     header['HIERARCH MARROW HILL FILTER WIDTH'] = (0.125, 'nm')
     header['HIERARCH lower case name'] = 'text'
     header['YES'], header['NO'] = True, False
