@@ -2,10 +2,12 @@ import { DataError, GeometryError } from '../errors.js';
 import { makeGrid } from '../grid/grid.js';
 import { METRES_PER_MEGAMETRE, RADIANS_PER_DEGREE } from '../units.js';
 import { cutOutExtent } from './cut-out.js';
+import { observerDirections } from './observer-directions.js';
 import { type LocalPatch, PIXEL_GOOD, PIXEL_MISSING, PIXEL_OFF_LIMB } from './patch.js';
 import { patchFrame } from './patch-frame.js';
+import { nativeFromPatch, patchVectorToPixel } from './patch-to-image.js';
 import { strongestRegion } from './region-finder.js';
-import { nativeFromPatch, observerDirections, patchVectorToPixel, resample } from './resample.js';
+import { resample } from './resample.js';
 import {
   carringtonOf,
   cosineMu,

@@ -351,3 +351,14 @@ describe('maps that are no TAN picture', () => {
     expect(Math.abs(fluxOf(patch) / blobFlux() - 1)).toBeLessThan(2e-4);
   });
 });
+
+describe('hostile scales', () => {
+  it('a header that claims pixels of a milli-arcsec neither hangs nor fills the memory', () => {
+    const map = mapOf(arcsecCards(1e-3, 64, 64), 64, 64, () => 5, { lonDeg: 0, latDeg: 5 });
+    const start = performance.now();
+    const options = { center: { lonDeg: 0, latDeg: 5 }, extentMm: 240 };
+    expect(() => makePatch(map, options)).toThrow(/lies in the picture/);
+    expect(performance.now() - start).toBeLessThan(30_000);
+    expect(makePatch(map).patch.nx).toBeLessThan(100);
+  });
+});
