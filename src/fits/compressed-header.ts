@@ -9,21 +9,22 @@ const COMPRESSION_CARD =
 
 /**
  * The header of the picture in a tile-compressed image: structure keywords from ZBITPIX and ZNAXISn,
- * table and compression keywords removed, ZBLANK of an integer picture as BLANK.
+ * table and compression keywords removed, ZBLANK of an integer picture as BLANK. Without ZBLANK a plain
+ * BLANK stays and acts: archives write it so.
  */
 export function compressedImageHeader(table: FitsHeader, index: number): FitsHeader {
+  const blank = numberAt(table, 'ZBLANK');
+  const integer = (numberAt(table, 'ZBITPIX') ?? 0) > 0;
+  const translated = integer && blank !== undefined;
   const kept = table.cards.filter(
     ({ keyword, value }) =>
       !TABLE_CARD.test(keyword) &&
       !COMPRESSION_CARD.test(keyword) &&
-      !(keyword === 'EXTNAME' && value === 'COMPRESSED_IMAGE'), // the table's, not the picture's
+      !(keyword === 'EXTNAME' && value === 'COMPRESSED_IMAGE') && // the table's, not the picture's
+      !(keyword === 'BLANK' && translated),
   );
   const cards = [...structureCards(table, index), ...kept];
-  const blank = numberAt(table, 'ZBLANK');
-  const integer = (numberAt(table, 'ZBITPIX') ?? 0) > 0;
-  if (blank !== undefined && integer && numberAt(table, 'BLANK') === undefined) {
-    cards.push(card('BLANK', blank, 'stored value of missing pixels'));
-  }
+  if (translated) cards.push(card('BLANK', blank, 'stored value of missing pixels'));
   return { cards, warnings: table.warnings };
 }
 

@@ -35,6 +35,7 @@ export function readTiles(
   }
   const codec = codecOf(hdu, header, table);
   const rules = quantisationRules(hdu, header, table, context);
+  const scalingFor = tileScaling(table, hdu, scaling);
   const scratch = makeScratch(tilePixels, hdu.bitpix);
   checkUnused(header, warnings);
   let missing = 0;
@@ -43,7 +44,7 @@ export function readTiles(
     if (kind === 'integers' && hdu.bitpix < 0) {
       dequantise(scratch.integers, tile.pixels, tile.row, rules(tile.row), scratch.floats);
     }
-    missing += placeTile(scratch, kind, tile, hdu, scaling, values);
+    missing += placeTile(scratch, kind, tile, hdu, scalingFor(tile.row), values);
   }
   return missing;
 }
@@ -59,6 +60,17 @@ function codecOf(hdu: FitsHdu, header: FitsHeader, table: BinaryTable): TileCode
     if (value !== undefined) parameters.set(name, value);
   }
   return { name: hdu.compression ?? '', bitpix: hdu.bitpix, quantised, parameters };
+}
+
+/** The scaling of each tile: integers may have a blank value of their own in a column ZBLANK. */
+function tileScaling(table: BinaryTable, hdu: FitsHdu, scaling: Scaling): (row: number) => Scaling {
+  const column = table.columns.get('ZBLANK');
+  if (column === undefined || hdu.bitpix < 0) return () => scaling;
+  return (row) => {
+    const blank = numberInRow(table, column, row);
+    const whole = Number.isSafeInteger(blank);
+    return { ...scaling, blank, blank64: whole ? BigInt(blank) : undefined };
+  };
 }
 
 function makeScratch(pixels: number, bitpix: number): TileScratch {

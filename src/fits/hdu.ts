@@ -125,5 +125,6 @@ function dataBytes(
     (product, length) => product * length,
     1,
   );
+  if (times === 0) return 0; // the product below may be infinite
   return (Math.abs(bitpix) / 8) * times * (extra + elements);
 }
