@@ -1,33 +1,15 @@
-// The compiled transforms: lays out the memory of the WebAssembly module, copies rows in and out
-// and calls its kernels. Peak memory: one copy of the spectrum (16 bytes a mode) plus 400 bytes
-// for each point of the longer side (for a side with a prime factor above 61, four times as much),
-// within the module's memory, which is kept for the next transform up to 256 MiB.
-import { type FftPlan, fftPlan, setRootOfUnity } from './fft-plan.js';
+// The compiled transforms: copies rows in and out of the module's memory and calls its kernels.
+// Peak memory: one copy of the spectrum (16 bytes a mode), about 500 bytes for each point of the
+// longer side (four times as much for a side with a prime factor above 61) and a batch of rows, in
+// the module's memory. That is kept for the next transform up to 256 MiB and let go above.
+import { type FftLayout, layOut } from './fft-layout.js';
+import { setRootOfUnity } from './fft-plan.js';
 import { type FftExports, kernelModule } from './kernel-loader.js';
 import type { Spectrum2 } from './spectrum.js';
 
 const PAGE = 65536;
 const KEPT_BYTES = 256 * 2 ** 20;
 const LARGEST_BYTES = 65535 * PAGE;
-
-/** Where things lie in the module's memory, in bytes. */
-interface Layout {
-  readonly nx: number;
-  readonly ny: number;
-  readonly columns: number;
-  readonly rowPlan: FftPlan;
-  readonly columnPlan: FftPlan;
-  /** Rows the row kernel takes at once. */
-  readonly batch: number;
-  readonly rowPlanAt: number;
-  readonly columnPlanAt: number;
-  readonly turnAt: number;
-  readonly scratchAt: readonly [a: number, b: number, c: number, odd: number];
-  readonly valuesAt: number;
-  readonly reAt: number;
-  readonly imAt: number;
-  readonly bytes: number;
-}
 
 interface Kernel {
   readonly exports: FftExports;
@@ -38,29 +20,18 @@ let current: Kernel | undefined;
 
 /** True where the compiled transforms can do a map of this size. */
 export function kernelTakes(nx: number, ny: number): boolean {
-  return (
-    kernelModule() !== null && 16 * nx * ny < LARGEST_BYTES && layOut(nx, ny).bytes <= LARGEST_BYTES
-  );
+  if (kernelModule() === null || 8 * nx * ny > LARGEST_BYTES) return false;
+  return layOut(nx, ny).bytes <= LARGEST_BYTES;
 }
 
 /** Forward transform of nx * ny real values, written to `out`. */
 export function kernelRealFft2(values: Float64Array, nx: number, ny: number, out: Spectrum2): void {
   const layout = layOut(nx, ny);
-  const { exports, memory } = prepare(layout, 0.5);
-  const { columns, batch, rowPlanAt, turnAt, valuesAt, reAt, imAt } = layout;
-  const stride = 8 * columns;
-  const rows = new Float64Array(memory.buffer, valuesAt, batch * nx);
-  for (let y = 0; y < ny; y += batch) {
-    const count = Math.min(batch, ny - y);
-    rows.set(values.subarray(y * nx, (y + count) * nx));
-    const re = reAt + y * stride;
-    const im = imAt + y * stride;
-    if (nx % 2 === 0) exports.forwardEvenRows(rowPlanAt, nx, valuesAt, turnAt, re, im, stride);
-    else exports.forwardOddRows(rowPlanAt, nx, valuesAt, re, im, stride, count);
-  }
-  exports.transformColumns(layout.columnPlanAt, reAt, imAt, stride, ny, 0, columns, 0);
-  out.re.set(new Float64Array(memory.buffer, reAt, columns * ny));
-  out.im.set(new Float64Array(memory.buffer, imAt, columns * ny));
+  const kernel = prepare(layout, 0.5);
+  forwardRows(kernel, layout, values);
+  const { columnPlanAt, tilesAt, tileBytes, tiles } = layout;
+  kernel.exports.transformTiles(columnPlanAt, tilesAt, tileBytes, 0, tiles);
+  readSpectrum(kernel, layout, out);
   release();
 }
 
@@ -68,61 +39,95 @@ export function kernelRealFft2(values: Float64Array, nx: number, ny: number, out
 export function kernelInverseRealFft2(spectrum: Spectrum2, out: Float64Array): void {
   const { nx, ny } = spectrum;
   const layout = layOut(nx, ny);
-  const gain = 1 / (nx * ny);
-  const { exports, memory } = prepare(layout, gain);
-  const { columns, batch, rowPlanAt, turnAt, valuesAt, reAt, imAt } = layout;
-  const stride = 8 * columns;
-  new Float64Array(memory.buffer, reAt, columns * ny).set(spectrum.re);
-  new Float64Array(memory.buffer, imAt, columns * ny).set(spectrum.im);
-  exports.transformColumns(layout.columnPlanAt, reAt, imAt, stride, ny, 0, columns, 1);
-  const rows = new Float64Array(memory.buffer, valuesAt, batch * nx);
-  for (let y = 0; y < ny; y += batch) {
-    const count = Math.min(batch, ny - y);
-    const re = reAt + y * stride;
-    const im = imAt + y * stride;
-    if (nx % 2 === 0)
-      exports.inverseEvenRows(rowPlanAt, nx, valuesAt, turnAt, gain, re, im, stride);
-    else exports.inverseOddRows(rowPlanAt, nx, valuesAt, gain, re, im, stride, count);
-    out.set(count === batch ? rows : rows.subarray(0, count * nx), y * nx);
-  }
+  const kernel = prepare(layout, 1 / (nx * ny));
+  writeSpectrum(kernel, layout, spectrum);
+  const { columnPlanAt, tilesAt, tileBytes, tiles } = layout;
+  kernel.exports.transformTiles(columnPlanAt, tilesAt, tileBytes, 0, tiles);
+  inverseRows(kernel, layout, out);
   release();
 }
 
-function layOut(nx: number, ny: number): Layout {
-  const even = nx % 2 === 0;
-  const columns = (nx >> 1) + 1;
-  const rowPlan = fftPlan(even ? nx / 2 : nx);
-  const columnPlan = fftPlan(ny);
-  const batch = even ? 8 : 16;
-  let at = 1024;
-  const take = (bytes: number) => {
-    const from = at;
-    at = Math.ceil((at + bytes) / 64) * 64;
-    return from;
-  };
-  const points = Math.max(rowPlan.points, columnPlan.points) + 1;
-  const plane = 8 * columns * (ny + batch);
-  const layout = {
-    nx,
-    ny,
-    columns,
-    rowPlan,
-    columnPlan,
-    batch,
-    rowPlanAt: take(rowPlan.bytes.length),
-    columnPlanAt: take(columnPlan.bytes.length),
-    turnAt: take(16 * ((nx >> 2) + 2)),
-    scratchAt: [take(128 * points), take(128 * points), take(128 * points), take(4096)] as const,
-    valuesAt: take(8 * batch * nx),
-    // Whole batches of rows are written: the last may pass the end of the map.
-    reAt: take(plane),
-    imAt: take(plane),
-  };
-  return { ...layout, bytes: at };
+function forwardRows({ exports, memory }: Kernel, layout: FftLayout, values: Float64Array): void {
+  const { nx, ny, even, batch, rowPlanAt, turnAt, stagingAt, tilesAt, tileBytes } = layout;
+  const staging = new Float64Array(memory.buffer, stagingAt, batch * nx);
+  for (let y = 0; y < ny; y += batch) {
+    staging.set(values.subarray(y * nx, Math.min(y + batch, ny) * nx));
+    const to = tilesAt + 128 * y;
+    if (even) exports.forwardEvenRows(rowPlanAt, nx, stagingAt, turnAt, to, tileBytes);
+    else exports.forwardOddRows(rowPlanAt, nx, stagingAt, to, tileBytes);
+  }
+}
+
+function inverseRows({ exports, memory }: Kernel, layout: FftLayout, out: Float64Array): void {
+  const { nx, ny, even, batch, rowPlanAt, turnAt, stagingAt, tilesAt, tileBytes } = layout;
+  const gain = 1 / (nx * ny);
+  const staging = new Float64Array(memory.buffer, stagingAt, batch * nx);
+  for (let y = 0; y < ny; y += batch) {
+    const from = tilesAt + 128 * y;
+    if (even) exports.inverseEvenRows(rowPlanAt, nx, stagingAt, turnAt, gain, from, tileBytes);
+    else exports.inverseOddRows(rowPlanAt, nx, stagingAt, gain, from, tileBytes);
+    out.set(y + batch <= ny ? staging : staging.subarray(0, (ny - y) * nx), y * nx);
+  }
+}
+
+/** The transformed tiles as rows of the half spectrum. */
+function readSpectrum({ exports, memory }: Kernel, layout: FftLayout, out: Spectrum2): void {
+  const { ny, even, columns, batch, stagingAt, imaginaryAt, tilesAt, tileBytes } = layout;
+  const { tiledColumns } = layout;
+  const pitch = 8 * columns;
+  const re = new Float64Array(memory.buffer, stagingAt, batch * columns);
+  const im = new Float64Array(memory.buffer, imaginaryAt, batch * columns);
+  for (let y = 0; y < ny; y += batch) {
+    const count = Math.min(batch, ny - y);
+    const from = tilesAt + 128 * y;
+    exports.readRows(from, tileBytes, count, tiledColumns, pitch, stagingAt, imaginaryAt);
+    if (even) exports.readEdges(tilesAt, y, count, ny, columns - 1, pitch, stagingAt, imaginaryAt);
+    out.re.set(count === batch ? re : re.subarray(0, count * columns), y * columns);
+    out.im.set(count === batch ? im : im.subarray(0, count * columns), y * columns);
+  }
+}
+
+/** Rows of the half spectrum as tiles, real and imaginary parts in each other's place. */
+function writeSpectrum({ exports, memory }: Kernel, layout: FftLayout, spectrum: Spectrum2): void {
+  const { ny, even, columns, batch, stagingAt, imaginaryAt, tilesAt, tileBytes } = layout;
+  const { tiledColumns } = layout;
+  const re = new Float64Array(memory.buffer, stagingAt, batch * columns);
+  const im = new Float64Array(memory.buffer, imaginaryAt, batch * columns);
+  for (let y = 0; y < ny; y += batch) {
+    const count = Math.min(batch, ny - y);
+    re.set(spectrum.re.subarray(y * columns, (y + count) * columns));
+    im.set(spectrum.im.subarray(y * columns, (y + count) * columns));
+    const to = tilesAt + 128 * y;
+    exports.writeRowsSwapped(
+      to,
+      tileBytes,
+      count,
+      tiledColumns,
+      8 * columns,
+      stagingAt,
+      imaginaryAt,
+    );
+  }
+  if (even) writeEdges(new Float64Array(memory.buffer, tilesAt, 16 * ny), spectrum);
+}
+
+/**
+ * Column 0 of the tiles as A + i B, parts swapped, where A and B are the columns kx = 0 and nx / 2,
+ * each made the transform of a real column: what is not self-conjugate in them does not count.
+ */
+function writeEdges(tile: Float64Array, { ny, columns, re, im }: Spectrum2): void {
+  for (let y = 0; y < ny; y++) {
+    const a = columns * y;
+    const c = columns * ((ny - y) % ny);
+    const b = a + columns - 1;
+    const d = c + columns - 1;
+    tile[16 * y] = 0.5 * (im[a] - im[c] + re[b] + re[d]);
+    tile[16 * y + 8] = 0.5 * (re[a] + re[c] - im[b] + im[d]);
+  }
 }
 
 /** Makes room and writes what the kernels need to know; `gain` goes into the factors of the rows. */
-function prepare(layout: Layout, gain: number): Kernel {
+function prepare(layout: FftLayout, gain: number): Kernel {
   current ??= instantiate();
   const missing = layout.bytes - current.memory.buffer.byteLength;
   if (missing > 0) current.memory.grow(Math.ceil(missing / PAGE));
@@ -130,8 +135,8 @@ function prepare(layout: Layout, gain: number): Kernel {
   const bytes = new Uint8Array(buffer);
   bytes.set(layout.rowPlan.bytes, layout.rowPlanAt);
   bytes.set(layout.columnPlan.bytes, layout.columnPlanAt);
-  if (layout.nx % 2 === 0) {
-    const turn = new Float64Array(buffer, layout.turnAt, 2 * ((layout.nx >> 2) + 2));
+  if (layout.even) {
+    const turn = new Float64Array(buffer, layout.turnAt, 2 * ((layout.nx >> 2) + 1));
     for (let k = 0; k <= layout.nx >> 2; k++) setRootOfUnity(turn, 2 * k, k, layout.nx, gain);
   }
   current.exports.setScratch(...layout.scratchAt);

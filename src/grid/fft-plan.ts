@@ -7,6 +7,8 @@ export interface FftPlan {
   readonly length: number;
   /** Points the kernel's buffers must hold: the length itself, or that of its convolution. */
   readonly points: number;
+  /** True where the length is done by a convolution. */
+  readonly chirped: boolean;
   readonly bytes: Uint8Array;
 }
 
@@ -98,12 +100,9 @@ function passRadices(n: number): number[] | undefined {
       rest /= prime;
     }
   }
-  while (twos > 4 || twos === 3) {
-    radices.push(8);
-    twos -= 3;
-  }
-  if (twos >= 2) radices.unshift(4);
-  if (twos === 4) radices.unshift(4);
+  // Radix 4 costs least for each factor of two; radix 8 spills registers.
+  for (; twos > 3 || twos === 2; twos -= 2) radices.push(4);
+  if (twos === 3) radices.unshift(8);
   if (twos === 1) radices.unshift(2);
   return radices;
 }
@@ -132,7 +131,7 @@ function passPlan(length: number, radices: readonly number[]): FftPlan {
     }
     s *= r;
   });
-  return { length, points: length, bytes };
+  return { length, points: length, chirped: false, bytes };
 }
 
 /** Radices with a pass of their own; any other is summed directly. */
@@ -170,7 +169,7 @@ function chirpPlan(length: number): FftPlan {
     }
   }
   new Float64Array(bytes.buffer, filterAt, 2 * points).set(plainTransform(filter));
-  return { length, points, bytes };
+  return { length, points, chirped: true, bytes };
 }
 
 /** Forward transform of interleaved complex values by plain recursion; used once for a length. */

@@ -2,27 +2,16 @@
 // file. The module is made from src/grid/kernel by scripts/build-kernels.mjs.
 import { readFileSync } from 'node:fs';
 
-/** What the module exports; addresses are bytes, see src/grid/kernel. */
+/** What the module exports: functions of addresses in bytes, counts and factors. */
 export interface FftExports {
-  readonly setScratch: (a: number, b: number, c: number, odd: number) => void;
-  readonly transformColumns: (
-    plan: number,
-    re: number,
-    im: number,
-    stride: number,
-    ny: number,
-    from: number,
-    to: number,
-    inverse: number,
-  ) => void;
+  readonly setScratch: (a: number, b: number, c: number, row: number, odd: number) => void;
   readonly forwardEvenRows: (
     plan: number,
     nx: number,
     values: number,
     turn: number,
-    re: number,
-    im: number,
-    stride: number,
+    tiles: number,
+    tileBytes: number,
   ) => void;
   readonly inverseEvenRows: (
     plan: number,
@@ -30,28 +19,58 @@ export interface FftExports {
     values: number,
     turn: number,
     gain: number,
-    re: number,
-    im: number,
-    stride: number,
+    tiles: number,
+    tileBytes: number,
   ) => void;
   readonly forwardOddRows: (
     plan: number,
     nx: number,
     values: number,
-    re: number,
-    im: number,
-    stride: number,
-    count: number,
+    tiles: number,
+    tileBytes: number,
   ) => void;
   readonly inverseOddRows: (
     plan: number,
     nx: number,
     values: number,
     gain: number,
+    tiles: number,
+    tileBytes: number,
+  ) => void;
+  readonly transformTiles: (
+    plan: number,
+    tiles: number,
+    tileBytes: number,
+    from: number,
+    to: number,
+  ) => void;
+  readonly readRows: (
+    tiles: number,
+    tileBytes: number,
+    count: number,
+    columns: number,
+    pitch: number,
     re: number,
     im: number,
-    stride: number,
+  ) => void;
+  readonly readEdges: (
+    tile: number,
+    from: number,
     count: number,
+    ny: number,
+    last: number,
+    pitch: number,
+    re: number,
+    im: number,
+  ) => void;
+  readonly writeRowsSwapped: (
+    tiles: number,
+    tileBytes: number,
+    count: number,
+    columns: number,
+    pitch: number,
+    re: number,
+    im: number,
   ) => void;
 }
 

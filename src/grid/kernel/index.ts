@@ -1,5 +1,5 @@
 // The compiled module: what src/grid/fft-kernel.ts may call.
-export { transformColumns } from './columns';
 export { forwardEvenRows, inverseEvenRows } from './even-rows';
 export { forwardOddRows, inverseOddRows } from './odd-rows';
 export { setScratch } from './scratch';
+export { readEdges, readRows, transformTiles, writeRowsSwapped } from './tiles';

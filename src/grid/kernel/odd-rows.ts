@@ -1,76 +1,60 @@
 // Real rows of odd length, sixteen at once: rows r and r + 8 are the real and imaginary parts of
 // lane r. With Z the transform of a + i b, A(k) = (Z(k) + conj Z(-k)) / 2 and
-// B(k) = (Z(k) - conj Z(-k)) / 2i. `values` addresses sixteen dense rows of nx numbers, `re, im`
-// `count` <= 16 rows of `stride` bytes with (nx + 1) / 2 numbers each.
-import { POINT, scratch } from './scratch';
-import { transformScratch } from './transform';
+// B(k) = (Z(k) - conj Z(-k)) / 2i. `values` addresses sixteen dense rows of nx numbers; `tiles`
+// and `tileBytes` are those of tiles.ts.
+import { IMAGINARY, POINT, scratch } from './scratch';
+import { transform } from './transform';
 
-export function forwardOddRows(plan: usize, nx: usize, values: usize, re: usize, im: usize, stride: usize, count: usize): void {
+export function forwardOddRows(plan: usize, nx: usize, values: usize, tiles: usize, tileBytes: usize): void {
+  const z = scratch.row;
   for (let row: usize = 0; row < 16; row++) {
     const from = values + 8 * nx * row;
-    const to = scratch.a + 8 * row;
+    const to = z + 8 * row;
     for (let x: usize = 0; x < nx; x++) store<f64>(to + x * POINT, load<f64>(from + 8 * x));
   }
-  const z = transformScratch(plan, false);
-  for (let row: usize = 0; row < count; row++) {
-    const lane = z + 8 * (row & 7);
-    const r = re + row * stride;
-    const i = im + row * stride;
-    if (row < 8) splitReal(lane, nx, r, i);
-    else splitImaginary(lane, nx, r, i);
+  transform(plan, z);
+  for (let k: usize = 0; k <= nx >> 1; k++) {
+    const near = z + k * POINT;
+    const far = k == 0 ? z : z + (nx - k) * POINT;
+    const to = tiles + (k >> 3) * tileBytes + 8 * (k & 7);
+    for (let lane: usize = 0; lane < 8; lane++) {
+      const zr = load<f64>(near + 8 * lane);
+      const zi = load<f64>(near + 8 * lane, IMAGINARY);
+      const yr = load<f64>(far + 8 * lane);
+      const yi = load<f64>(far + 8 * lane, IMAGINARY);
+      const a = to + lane * POINT;
+      store<f64>(a, 0.5 * (zr + yr));
+      store<f64>(a, 0.5 * (zi - yi), IMAGINARY);
+      store<f64>(a, 0.5 * (zi + yi), 8 * POINT);
+      store<f64>(a, 0.5 * (yr - zr), 8 * POINT + IMAGINARY);
+    }
   }
 }
 
-function splitReal(z: usize, nx: usize, re: usize, im: usize): void {
-  store<f64>(re, load<f64>(z));
-  store<f64>(im, 0);
-  for (let k: usize = 1; k <= nx >> 1; k++) {
-    const a = z + k * POINT;
-    const b = z + (nx - k) * POINT;
-    store<f64>(re + 8 * k, 0.5 * (load<f64>(a) + load<f64>(b)));
-    store<f64>(im + 8 * k, 0.5 * (load<f64>(a, 64) - load<f64>(b, 64)));
+/** The way back, times `gain`, from tiles whose real and imaginary parts have changed places. */
+export function inverseOddRows(plan: usize, nx: usize, values: usize, gain: f64, tiles: usize, tileBytes: usize): void {
+  const z = scratch.row;
+  for (let k: usize = 0; k <= nx >> 1; k++) {
+    const near = z + k * POINT;
+    const far = z + (nx - k) * POINT;
+    const from = tiles + (k >> 3) * tileBytes + 8 * (k & 7);
+    for (let lane: usize = 0; lane < 8; lane++) {
+      const a = from + lane * POINT;
+      const ar = gain * load<f64>(a, IMAGINARY);
+      const br = gain * load<f64>(a, 8 * POINT + IMAGINARY);
+      // The imaginary parts of the mean do not count.
+      const ai = k == 0 ? 0 : gain * load<f64>(a);
+      const bi = k == 0 ? 0 : gain * load<f64>(a, 8 * POINT);
+      store<f64>(near + 8 * lane, ar - bi, IMAGINARY);
+      store<f64>(near + 8 * lane, ai + br);
+      store<f64>(far + 8 * lane, ar + bi, IMAGINARY);
+      store<f64>(far + 8 * lane, br - ai);
+    }
   }
-}
-
-function splitImaginary(z: usize, nx: usize, re: usize, im: usize): void {
-  store<f64>(re, load<f64>(z, 64));
-  store<f64>(im, 0);
-  for (let k: usize = 1; k <= nx >> 1; k++) {
-    const a = z + k * POINT;
-    const b = z + (nx - k) * POINT;
-    store<f64>(re + 8 * k, 0.5 * (load<f64>(a, 64) + load<f64>(b, 64)));
-    store<f64>(im + 8 * k, 0.5 * (load<f64>(b) - load<f64>(a)));
-  }
-}
-
-/** The way back, times `gain`: overwrites `count` of the rows at `values`; imaginary parts of F(0) are ignored. */
-export function inverseOddRows(plan: usize, nx: usize, values: usize, gain: f64, re: usize, im: usize, stride: usize, count: usize): void {
-  for (let lane: usize = 0; lane < 8; lane++) {
-    const a = lane < count ? lane : 0;
-    const b = lane + 8 < count ? lane + 8 : a;
-    joinRows(scratch.a + 8 * lane, nx, gain, re + a * stride, im + a * stride, re + b * stride, im + b * stride);
-  }
-  const z = transformScratch(plan, true);
-  for (let row: usize = 0; row < count; row++) {
-    const from = z + 8 * row;
+  transform(plan, z);
+  for (let row: usize = 0; row < 16; row++) {
+    const from = z + (row < 8 ? IMAGINARY + 8 * row : 8 * (row - 8));
     const to = values + 8 * nx * row;
     for (let x: usize = 0; x < nx; x++) store<f64>(to + 8 * x, load<f64>(from + x * POINT));
-  }
-}
-
-function joinRows(z: usize, nx: usize, gain: f64, ar: usize, ai: usize, br: usize, bi: usize): void {
-  store<f64>(z, gain * load<f64>(ar));
-  store<f64>(z, gain * load<f64>(br), 64);
-  for (let k: usize = 8; k <= 8 * (nx >> 1); k += 8) {
-    const fr = gain * load<f64>(ar + k);
-    const fi = gain * load<f64>(ai + k);
-    const gr = gain * load<f64>(br + k);
-    const gi = gain * load<f64>(bi + k);
-    const at = z + 16 * k;
-    const mirror = z + nx * POINT - 16 * k;
-    store<f64>(at, fr - gi);
-    store<f64>(at, fi + gr, 64);
-    store<f64>(mirror, fr + gi);
-    store<f64>(mirror, gr - fi, 64);
   }
 }
