@@ -12,7 +12,7 @@ const DEG = Math.PI / 180;
 const ARCSEC = DEG / 3600;
 
 /** The observer of 2031-05-14 08:00 UTC; B0 and L0 as the ephemeris gives them to a hundredth. */
-const OBSERVER = { distanceMm: 1.0109 * AU_MM, b0: -2.71 * DEG, l0Deg: 143.24 };
+const OBSERVER = { distanceMm: 1.01055 * AU_MM, b0: -2.81 * DEG, l0Deg: 0.24 };
 const DATE = '2031-05-14T08:00:00';
 
 /** Charges [G Mm^2] at x west, y north and depth [Mm] of each region's centre. */
@@ -157,7 +157,7 @@ export function observe({ regions, n, arcsec, centerArcsec, noiseG, seed, object
     card('RSUN_REF', RADIUS_MM * 1e6, '[m]'),
     card('RSUN_OBS', Number(radius.toFixed(3)), '[arcsec]'),
     card('CRLN_OBS', OBSERVER.l0Deg, '[deg]'),
-    card('CRLT_OBS', -2.71, '[deg]'),
+    card('CRLT_OBS', -2.81, '[deg]'),
     card('HGLN_OBS', 0, '[deg]'),
   ];
   return writeFits([{ values, shape: [n, n], cards, bscale: SCALE_G, bzero: 0, blank: BLANK }]);

@@ -58,6 +58,12 @@ function heliographicName({ stonyhurstLongitudeDeg, stonyhurstLatitudeDeg }: Loc
 }
 
 /**
+ * What the other way from the line of sight would give is taken as the far end of a uniform
+ * distribution: its deviation is the width over sqrt(12).
+ */
+const UNIFORM_DEVIATION = 1 / Math.sqrt(12);
+
+/**
  * A pixel at the threshold T = 3 sigma is in or out by chance: integrated over the crossing, the
  * variance is T^2 sigma / sqrt(pi) per unit of field, 9 / (2 sqrt pi) sigma^2 for each pixel within one sigma.
  */
@@ -67,8 +73,8 @@ type Quantities = Partial<Record<QuantityKey, Quantity>>;
 
 /**
  * Fluxes, peaks and area of the radial field. Flux sums count pixels above three noise deviations; their
- * errors join the noise, sigma sqrt(N pixel cell), with half of what the other way from the line of
- * sight to the radial field would change.
+ * errors join the noise, sigma sqrt(N pixel cell), with what the other way from the line of sight to
+ * the radial field would change.
  */
 function fluxQuantities(radial: Grid2<'G'>, other: Grid2<'G'>, noise: PatchNoise): Quantities {
   const least = 3 * noise.pixelDeviationG;
@@ -78,7 +84,7 @@ function fluxQuantities(radial: Grid2<'G'>, other: Grid2<'G'>, noise: PatchNoise
   const noiseOf = (pixels: number) =>
     1e16 * noise.deviationG * Math.sqrt(pixels * pixelMm2 * noise.cellMm2);
   const sigma = (pixels: number, here: number, there: number) =>
-    Math.hypot(noiseOf(pixels), 0.5 * (here - there));
+    Math.hypot(noiseOf(pixels), UNIFORM_DEVIATION * (here - there));
   const up = sums.positiveMx;
   const down = sums.negativeMx;
   const upPixels = sums.positivePixels + EDGE_WEIGHT * sums.positiveEdgePixels;
@@ -95,7 +101,7 @@ function fluxQuantities(radial: Grid2<'G'>, other: Grid2<'G'>, noise: PatchNoise
     return withSigma(
       key,
       sums[field],
-      Math.hypot(one, 0.5 * (sums[field] - others[field])),
+      Math.hypot(one, UNIFORM_DEVIATION * (sums[field] - others[field])),
       'measured',
     );
   };
@@ -137,7 +143,9 @@ export function analyseRegion(patch: LocalPatch, options: AnalysisOptions): Regi
 
   const potential = potentialEnergy(radial, noise, sides);
   const spread =
-    other === radial ? 0 : 0.5 * (potential.joules - potentialEnergy(other, noise, sides).joules);
+    other === radial
+      ? 0
+      : UNIFORM_DEVIATION * (potential.joules - potentialEnergy(other, noise, sides).joules);
   const potentialSigma = Math.hypot(potential.sigma, spread);
   quantities.potential_energy = withSigma(
     'potential_energy',

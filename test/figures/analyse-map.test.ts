@@ -5,16 +5,14 @@ import type { QuantityKey } from '../../src/figures/quantity.js';
 import { parseFits } from '../../src/fits/file.js';
 import { readSolarMap } from '../../src/geometry/solar-map.js';
 import { bipoleFlux, chargeEnergy } from '../support/charges.js';
+import { sphereTruth } from '../support/sphere.js';
 
-/** A bipole with 24 Mm between the charges, 8 Mm deep: 99 % of its flux within 150 Mm. */
+/** A bipole small beside its patch of 220 Mm, so that little of its flux lies outside. */
 const CHARGES = [
-  [1e5, -12, 0, 8],
-  [-1e5, 12, 0, 8],
+  [5e4, -7, 0, 5],
+  [-5e4, 7, 0, 5],
 ] as const;
-const EXACT_ENERGY = chargeEnergy(
-  CHARGES.map(([strength, x, y, depth]) => ({ strength, x, y, depth })),
-);
-const EXACT_FLUX = bipoleFlux(1e5, 24, 8);
+const EXACT = sphereTruth(CHARGES);
 
 /** The whole path, FITS bytes to figures, for the bipole at a place on a round Sun. */
 function figuresAt(lonDeg: number, latDeg: number) {
@@ -24,7 +22,7 @@ function figuresAt(lonDeg: number, latDeg: number) {
     n: 512,
     arcsec: 0.6,
     centerArcsec: skyPosition(region),
-    noiseG: 0.5,
+    noiseG: 0.05,
     seed: 40,
     object: 'bipole',
   });
@@ -33,23 +31,33 @@ function figuresAt(lonDeg: number, latDeg: number) {
   return { figures, value: (key: QuantityKey) => figures.quantities[key]?.value ?? Number.NaN };
 }
 
-describe('a bipole on a round Sun, from FITS to figures (closed forms of submerged charges)', () => {
-  it('at disk centre: energy within 2 %, flux within 1 % of what the patch can hold', () => {
-    const { value } = figuresAt(0, -2.71);
-    expect(Math.abs(value('potential_energy') / EXACT_ENERGY - 1)).toBeLessThan(0.02);
-    expect(Math.abs(value('positive_flux') / EXACT_FLUX - 1)).toBeLessThan(0.02);
+describe('a bipole on a round Sun, from FITS to figures (exact field of submerged charges)', () => {
+  it('differs from one below a plane by 3 % at most', () => {
+    const flat = chargeEnergy(
+      CHARGES.map(([strength, x, y, depth]) => ({ strength, x, y, depth })),
+    );
+    expect(EXACT.energy / flat).toBeGreaterThan(1.02);
+    expect(EXACT.energy / flat).toBeLessThan(1.03);
+    expect(Math.abs(EXACT.flux / bipoleFlux(5e4, 14, 5) - 1)).toBeLessThan(0.03);
+  });
+
+  it('at disk centre: energy within 2 %, flux within 1 %', () => {
+    const { value } = figuresAt(0, -2.81);
+    expect(Math.abs(value('potential_energy') / EXACT.energy - 1)).toBeLessThan(0.02);
+    expect(Math.abs(value('positive_flux') / EXACT.flux - 1)).toBeLessThan(0.01);
     expect(Math.abs(value('flux_imbalance'))).toBeLessThan(0.01);
   });
 
+  // Wanted are 10 % and 5 %; what is reached is 0.2 % and 1.5 %.
   it.each([
-    ['west', 40, -2.71],
+    ['west', 40, -2.81],
     ['north-east', -30, 24],
-  ])('40 degrees to the %s: energy within 10 %%, flux within 5 %%', (_, lonDeg, latDeg) => {
+  ])('40 degrees to the %s: energy and flux within 2 %%', (_, lonDeg, latDeg) => {
     const { figures, value } = figuresAt(lonDeg, latDeg);
     expect(figures.center.mu).toBeLessThan(0.79);
-    expect(figures.center.stonyhurstLongitudeDeg).toBeCloseTo(lonDeg, -0.5);
-    expect(Math.abs(value('potential_energy') / EXACT_ENERGY - 1)).toBeLessThan(0.1);
-    expect(Math.abs(value('positive_flux') / EXACT_FLUX - 1)).toBeLessThan(0.05);
+    expect(figures.center.stonyhurstLongitudeDeg).toBeCloseTo(lonDeg, -1);
+    expect(Math.abs(value('potential_energy') / EXACT.energy - 1)).toBeLessThan(0.02);
+    expect(Math.abs(value('positive_flux') / EXACT.flux - 1)).toBeLessThan(0.02);
   });
 });
 
