@@ -52,6 +52,8 @@ function forwardRows({ exports, memory }: Kernel, layout: FftLayout, values: Flo
   const staging = new Float64Array(memory.buffer, stagingAt, batch * nx);
   for (let y = 0; y < ny; y += batch) {
     staging.set(values.subarray(y * nx, Math.min(y + batch, ny) * nx));
+    // Rows of odd length are transformed in pairs: what an earlier batch left would be mixed in.
+    if (y + batch > ny) staging.fill(0, (ny - y) * nx);
     const to = tilesAt + 128 * y;
     if (even) exports.forwardEvenRows(rowPlanAt, nx, stagingAt, turnAt, to, tileBytes);
     else exports.forwardOddRows(rowPlanAt, nx, stagingAt, to, tileBytes);
@@ -94,14 +96,18 @@ function writeSpectrum({ exports, memory }: Kernel, layout: FftLayout, spectrum:
   const re = new Float64Array(memory.buffer, stagingAt, batch * columns);
   const im = new Float64Array(memory.buffer, imaginaryAt, batch * columns);
   for (let y = 0; y < ny; y += batch) {
-    const count = Math.min(batch, ny - y);
-    re.set(spectrum.re.subarray(y * columns, (y + count) * columns));
-    im.set(spectrum.im.subarray(y * columns, (y + count) * columns));
+    const end = Math.min(y + batch, ny) * columns;
+    re.set(spectrum.re.subarray(y * columns, end));
+    im.set(spectrum.im.subarray(y * columns, end));
+    if (y + batch > ny) {
+      re.fill(0, (ny - y) * columns);
+      im.fill(0, (ny - y) * columns);
+    }
     const to = tilesAt + 128 * y;
     exports.writeRowsSwapped(
       to,
       tileBytes,
-      count,
+      batch,
       tiledColumns,
       8 * columns,
       stagingAt,

@@ -8,24 +8,63 @@ import { emptySpectrum, type Spectrum2 } from './spectrum.js';
 export { goodSize } from './fft-plan.js';
 export { emptySpectrum, type Spectrum2 } from './spectrum.js';
 
-/** Transforms row-major real `values` (nx * ny, no NaN) forward, into `out` where it is given. */
+/**
+ * Transforms row-major real `values` (nx * ny) forward, into `out` where it is given. One NaN
+ * spoils the whole spectrum.
+ */
 export function realFft2(
   values: Float64Array,
   nx: number,
   ny: number,
   out: Spectrum2 = emptySpectrum(nx, ny),
 ): Spectrum2 {
+  if (!(isSize(nx) && isSize(ny)) || values.length !== nx * ny) {
+    throw new RangeError(`realFft2: ${values.length} values are not ${nx} x ${ny}`);
+  }
+  checkSpectrum(out, nx, ny);
   if (!kernelTakes(nx, ny)) return portableRealFft2(values, nx, ny, out);
   kernelRealFft2(values, nx, ny, out);
   return out;
 }
 
-/** Inverse of `realFft2`; the imaginary parts of self-conjugate modes are ignored. */
+/**
+ * Inverse of `realFft2`, into `out` where it is given. What is not self-conjugate in the columns
+ * kx = 0 and kx = nx / 2 (such as an imaginary part of the mean) is ignored.
+ */
 export function inverseRealFft2(
   spectrum: Spectrum2,
   out: Float64Array = new Float64Array(spectrum.nx * spectrum.ny),
 ): Float64Array {
-  if (!kernelTakes(spectrum.nx, spectrum.ny)) return portableInverseRealFft2(spectrum, out);
+  const { nx, ny } = spectrum;
+  checkSpectrum(spectrum, nx, ny);
+  if (out.length !== nx * ny) {
+    throw new RangeError(`inverseRealFft2: room for ${out.length} values, not ${nx} x ${ny}`);
+  }
+  if (!kernelTakes(nx, ny)) return portableInverseRealFft2(spectrum, out);
   kernelInverseRealFft2(spectrum, out);
   return out;
+}
+
+/** Which transforms are in use: the compiled ones, or the portable ones in their stead. */
+export function transformKernel(): 'compiled' | 'portable' {
+  return kernelTakes(1, 1) ? 'compiled' : 'portable';
+}
+
+function isSize(n: number): boolean {
+  return Number.isInteger(n) && n >= 1;
+}
+
+function checkSpectrum({ nx, ny, columns, re, im }: Spectrum2, wantX: number, wantY: number): void {
+  const count = ((wantX >> 1) + 1) * wantY;
+  if (
+    nx !== wantX ||
+    ny !== wantY ||
+    columns !== (nx >> 1) + 1 ||
+    re.length !== count ||
+    im.length !== count
+  ) {
+    throw new RangeError(
+      `spectrum of ${nx} x ${ny} with ${re.length} modes, wanted ${wantX} x ${wantY} with ${count}`,
+    );
+  }
 }
