@@ -1,4 +1,5 @@
 import { paddedSpectrum, type Sides } from '../field/potential.js';
+import type { Spectrum2 } from '../grid/fft.js';
 import { type Grid2, makeGrid } from '../grid/grid.js';
 import {
   type Energy,
@@ -28,10 +29,15 @@ function mapField(field: Grid2<'G'>, change: (fieldG: number) => number): Grid2<
 
 /**
  * Energy of the current-free field above a patch [J], with nothing (open) or the patch repeated
- * (periodic, mean field left out) beyond its sides.
+ * (periodic, mean field left out) beyond its sides. `spectrum` is the map's padded spectrum, where the
+ * caller has it already.
  */
-export function potentialEnergy(radial: Grid2<'G'>, noise: FieldNoise, sides: Sides): Energy {
-  const spectrum = paddedSpectrum(radial, sides);
+export function potentialEnergy(
+  radial: Grid2<'G'>,
+  noise: FieldNoise,
+  sides: Sides,
+  spectrum: Spectrum2 = paddedSpectrum(radial, sides),
+): Energy {
   const { nx, ny } = spectrum;
   const form =
     sides === 'open' ? openForm(nx, ny, radial.pixelMm) : periodicForm(nx, ny, radial.pixelMm, 0);

@@ -47,9 +47,14 @@ let lastKernel:
 function inverseDistanceSpectrum(px: number, py: number): Float64Array {
   if (lastKernel?.px === px && lastKernel.py === py) return lastKernel.gain;
   const kernel = new Float64Array(px * py);
-  for (let y = 0; y < py; y++) {
-    for (let x = 0; x < px; x++)
-      kernel[x + px * y] = cellPairInverseDistance(Math.min(x, px - x), Math.min(y, py - y));
+  for (let y = 0; 2 * y <= py; y++) {
+    const row = px * y;
+    for (let x = 0; 2 * x <= px; x++) {
+      const value = cellPairInverseDistance(x, y);
+      kernel[row + x] = value;
+      if (x > 0) kernel[row + px - x] = value;
+    }
+    if (y > 0) kernel.copyWithin(px * (py - y), row, row + px);
   }
   lastKernel = { px, py, gain: realFft2(kernel, px, py).re };
   return lastKernel.gain;

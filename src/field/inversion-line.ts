@@ -29,130 +29,165 @@ export const STRONG_GRADIENT_G_PER_MM = 50;
 export const LEAST_HORIZONTAL_G = 100;
 /** The field is smoothed to this width before its zero line is drawn [Mm], or to 1.5 pixels. */
 export const SMOOTHING_WIDTH_MM = 1.5;
+/** Zero crossings in weaker horizontal field than this share of the least are not even traced. */
+const TRACED_SHARE = 0.4;
 
-/** The smoothed field and what is sampled along its zero line. */
-export interface InversionLineInputs {
-  readonly nx: number;
-  readonly ny: number;
-  readonly pixelMm: number;
-  readonly smoothed: Float64Array;
-  readonly gradient: Float64Array;
-  readonly horizontal: Float64Array;
-  /** Standard deviation of the smoothing [pixels]. */
-  readonly blurPixels: number;
-  /** Closed rings of the zero level in patch pixels, also along the edges of what is known. */
-  readonly rings: readonly (readonly [number, number])[][];
+/** One piece of the zero line between two pixel edges, with the field at its middle. */
+interface Segment {
+  readonly fromX: number;
+  readonly fromY: number;
+  readonly toX: number;
+  readonly toY: number;
+  readonly lengthMm: number;
+  readonly horizontalG: number;
+  readonly gradient: number;
 }
 
-/** Smooths the radial field [G] and takes its gradient [G/Mm]; `horizontal` is the current-free strength [G]. */
-export function prepareInversionLine(
+/** The zero line of a smoothed field: chains of segments in the field's order. */
+export interface ZeroLine {
+  readonly chains: readonly (readonly Segment[])[];
+  /** Standard deviation of the smoothing [Mm]. */
+  readonly blurMm: number;
+}
+
+/** Box around the known pixels of a map. */
+function knownBox(values: Float64Array, nx: number, ny: number) {
+  let [west, east, south, north] = [nx, -1, ny, -1];
+  for (let y = 0; y < ny; y++) {
+    for (let x = 0; x < nx; x++) {
+      if (Number.isNaN(values[x + nx * y])) continue;
+      if (x < west) west = x;
+      if (x > east) east = x;
+      if (y < south) south = y;
+      north = y;
+    }
+  }
+  return { west, south, width: east - west + 1, height: north - south + 1 };
+}
+
+/** Closed rings of the zero level in patch pixels, also along the edges of what is known. */
+function zeroRings(smoothed: Float64Array, nx: number, ny: number): [number, number][][] {
+  const { west, south, width, height } = knownBox(smoothed, nx, ny);
+  if (width < 2 || height < 2) return [];
+  const filled: number[] = new Array(width * height);
+  for (let y = 0, i = 0; y < height; y++) {
+    for (let x = 0; x < width; x++, i++) {
+      const value = smoothed[west + x + nx * (south + y)];
+      filled[i] = Number.isNaN(value) ? 0 : value;
+    }
+  }
+  // A shade above zero, so that missing pixels lie on one side and not on the line.
+  const shapes = contours().size([width, height]).smooth(true).contour(filled, 1e-9);
+  return shapes.coordinates.flatMap((polygon) =>
+    polygon.map((ring) =>
+      ring.map(([x, y]): [number, number] => [x + west - 0.5, y + south - 0.5]),
+    ),
+  );
+}
+
+/**
+ * Zero line of the radial field [G] smoothed to 1.5 Mm, wherever the current-free horizontal field [G]
+ * is at least two fifths of `leastHorizontalG`; it ends at missing pixels and at the edges.
+ */
+export function traceZeroLine(
   radial: Grid2<'G'>,
   horizontal: { readonly x: Grid2<'G'>; readonly y: Grid2<'G'> },
-): InversionLineInputs {
+  leastHorizontalG: number,
+): ZeroLine {
   const [ny, nx] = radial.values.shape;
   const { pixelMm } = radial;
   const blurPixels = Math.max(SMOOTHING_WIDTH_MM / pixelMm, 1.5) / WIDTH_PER_DEVIATION;
   const smoothed = gaussianBlur(radial.values.data, nx, ny, blurPixels);
+  const gradient = gradientSize(smoothed, nx, ny, pixelMm);
   const hx = horizontal.x.values.data;
   const hy = horizontal.y.values.data;
-  return {
-    nx,
-    ny,
-    pixelMm,
-    smoothed,
-    gradient: gradientSize(smoothed, nx, ny, pixelMm),
-    horizontal: hx.map((value, i) => Math.sqrt(value * value + hy[i] * hy[i])),
-    blurPixels,
-    rings: zeroRings(smoothed, nx, ny),
-  };
+  const strength = new Float64Array(nx * ny);
+  for (let i = 0; i < strength.length; i++) {
+    strength[i] = Math.sqrt(hx[i] * hx[i] + hy[i] * hy[i]);
+    // Outside the region the zero line of noise is endless: take it for missing.
+    if (strength[i] < TRACED_SHARE * leastHorizontalG) smoothed[i] = Number.NaN;
+  }
+  const at = (map: Float64Array, x: number, y: number) => bilinear(map, nx, ny, x, y);
+  const chains: Segment[][] = [];
+  for (const ring of zeroRings(smoothed, nx, ny)) {
+    let chain: Segment[] = [];
+    for (let i = 0; i + 1 < ring.length; i++) {
+      const [fromX, fromY] = ring[i];
+      const [toX, toY] = ring[i + 1];
+      const middle = [0.5 * (fromX + toX), 0.5 * (fromY + toY)] as const;
+      // All four pixels around are known, so this is a zero of the field and no outline.
+      if (Number.isNaN(at(smoothed, ...middle))) {
+        if (chain.length > 0) chains.push(chain);
+        chain = [];
+        continue;
+      }
+      chain.push({
+        fromX,
+        fromY,
+        toX,
+        toY,
+        lengthMm: pixelMm * Math.hypot(toX - fromX, toY - fromY),
+        horizontalG: at(strength, ...middle),
+        gradient: at(gradient, ...middle),
+      });
+    }
+    if (chain.length > 0) chains.push(chain);
+  }
+  return { chains, blurMm: blurPixels * pixelMm };
 }
 
-function zeroRings(smoothed: Float64Array, nx: number, ny: number): [number, number][][] {
-  const filled = Array.from(smoothed, (value) => (Number.isNaN(value) ? 0 : value));
-  // A shade above zero, so that missing pixels lie on one side and not on the line.
-  const shapes = contours().size([nx, ny]).smooth(true).contour(filled, 1e-9);
-  return shapes.coordinates.flatMap((polygon) =>
-    polygon.map((ring) => ring.map(([x, y]): [number, number] => [x - 0.5, y - 0.5])),
-  );
-}
-
-/** The pixels beside (x, y) are all known and inside the map. */
-function isInside(inputs: InversionLineInputs, x: number, y: number): boolean {
-  return !Number.isNaN(bilinear(inputs.smoothed, inputs.nx, inputs.ny, x, y));
+function isStrong(segment: Segment): boolean {
+  return segment.horizontalG >= STRONG_HORIZONTAL_G && segment.gradient >= STRONG_GRADIENT_G_PER_MM;
 }
 
 /**
- * The polarity inversion line: zero contour of the smoothed radial field where the current-free
- * horizontal field reaches `leastHorizontalG`. Segments where it reaches 150 G and the gradient 50 G/Mm
- * are marked strong.
+ * The polarity inversion line: the parts of the zero line where the current-free horizontal field reaches
+ * `leastHorizontalG`. Segments where it reaches 150 G and the gradient 50 G/Mm are marked strong.
  */
-export function traceInversionLines(
-  inputs: InversionLineInputs,
-  leastHorizontalG: number,
-): InversionLine[] {
-  const { nx, ny, horizontal, gradient } = inputs;
+export function inversionLines(zero: ZeroLine, leastHorizontalG: number): InversionLine[] {
   const lines: InversionLine[] = [];
-  for (const ring of inputs.rings) {
-    let x: number[] = [];
-    let y: number[] = [];
-    let strong: boolean[] = [];
-    const finish = () => {
-      if (strong.length > 0)
-        lines.push({ x: Float64Array.from(x), y: Float64Array.from(y), strong });
-      x = [];
-      y = [];
-      strong = [];
-    };
-    for (let i = 0; i + 1 < ring.length; i++) {
-      const [ax, ay] = ring[i];
-      const [bx, by] = ring[i + 1];
-      const mx = 0.5 * (ax + bx);
-      const my = 0.5 * (ay + by);
-      const h = bilinear(horizontal, nx, ny, mx, my);
-      if (!(isInside(inputs, ax, ay) && isInside(inputs, bx, by) && h >= leastHorizontalG)) {
-        finish();
+  const finish = (run: readonly Segment[]) => {
+    if (run.length === 0) return;
+    lines.push({
+      x: Float64Array.of(run[0].fromX, ...run.map(({ toX }) => toX)),
+      y: Float64Array.of(run[0].fromY, ...run.map(({ toY }) => toY)),
+      strong: run.map(isStrong),
+    });
+  };
+  for (const chain of zero.chains) {
+    let run: Segment[] = [];
+    for (const segment of chain) {
+      if (segment.horizontalG >= leastHorizontalG) {
+        run.push(segment);
         continue;
       }
-      if (x.length === 0) {
-        x.push(ax);
-        y.push(ay);
-      }
-      x.push(bx);
-      y.push(by);
-      strong.push(
-        h >= STRONG_HORIZONTAL_G && bilinear(gradient, nx, ny, mx, my) >= STRONG_GRADIENT_G_PER_MM,
-      );
+      finish(run);
+      run = [];
     }
-    finish();
+    finish(run);
   }
   return lines;
 }
 
 /**
- * Length [Mm], strong-gradient length [Mm] and gradient-weighted length [G], the integral of |grad Bz|
- * along the line where the current-free horizontal field exceeds 150 G (Falconer, Moore & Gary 2008,
- * ApJ 689, 1433). `horizontalShiftG` and `gradientShift` move the thresholds, for intervals.
+ * Length [Mm] where the horizontal field reaches `leastHorizontalG`, strong-gradient length [Mm] and
+ * gradient-weighted length [G], the integral of |grad Bz| along the line where the current-free horizontal
+ * field exceeds 150 G (Falconer, Moore & Gary 2008, ApJ 689, 1433). The shifts move the other thresholds,
+ * for intervals.
  */
-export function measureInversionLines(
-  lines: readonly InversionLine[],
-  inputs: InversionLineInputs,
+export function measureInversionLine(
+  zero: ZeroLine,
+  leastHorizontalG: number,
   horizontalShiftG = 0,
   gradientShift = 0,
 ): InversionLineMeasures {
-  const { nx, ny, pixelMm, horizontal, gradient } = inputs;
   let [lengthMm, strongLengthMm, gradientWeightedG] = [0, 0, 0];
-  for (const { x, y } of lines) {
-    for (let i = 0; i + 1 < x.length; i++) {
-      const mx = 0.5 * (x[i] + x[i + 1]);
-      const my = 0.5 * (y[i] + y[i + 1]);
-      const step = pixelMm * Math.hypot(x[i + 1] - x[i], y[i + 1] - y[i]);
-      lengthMm += step;
-      const slope = bilinear(gradient, nx, ny, mx, my);
-      const h = bilinear(horizontal, nx, ny, mx, my);
-      if (!(h >= STRONG_HORIZONTAL_G + horizontalShiftG)) continue;
-      gradientWeightedG += slope * step;
-      if (slope >= STRONG_GRADIENT_G_PER_MM + gradientShift) strongLengthMm += step;
-    }
+  for (const segment of zero.chains.flat()) {
+    if (segment.horizontalG >= leastHorizontalG) lengthMm += segment.lengthMm;
+    if (!(segment.horizontalG >= STRONG_HORIZONTAL_G + horizontalShiftG)) continue;
+    gradientWeightedG += segment.gradient * segment.lengthMm;
+    if (segment.gradient >= STRONG_GRADIENT_G_PER_MM + gradientShift)
+      strongLengthMm += segment.lengthMm;
   }
   return { lengthMm, strongLengthMm, gradientWeightedG };
 }

@@ -37,19 +37,18 @@ export function nearLineFlux(radial: Grid2<'G'>, thresholdG = STRONG_FIELD_G): n
   const factor = Math.max(1, Math.round(DEFINING_PIXEL_MM / radial.pixelMm));
   const { values, nx, ny } = blockMean(radial.values.data, width, height, factor);
   const pixelMm = radial.pixelMm * factor;
-  const positive = dilate(
-    Uint8Array.from(values, (b) => (b > thresholdG ? 1 : 0)),
-    nx,
-    ny,
-  );
-  const negative = dilate(
-    Uint8Array.from(values, (b) => (b < -thresholdG ? 1 : 0)),
-    nx,
-    ny,
-  );
-  const touch = Float64Array.from(positive, (value, i) => value * negative[i]);
+  const above = new Uint8Array(values.length);
+  const below = new Uint8Array(values.length);
+  for (let i = 0; i < values.length; i++) {
+    if (values[i] > thresholdG) above[i] = 1;
+    else if (values[i] < -thresholdG) below[i] = 1;
+  }
+  const positive = dilate(above, nx, ny);
+  const negative = dilate(below, nx, ny);
+  const touch = new Float64Array(values.length);
+  for (let i = 0; i < values.length; i++) touch[i] = positive[i] * negative[i];
   if (!touch.includes(1)) return 0;
-  const weight = gaussianSpread(touch, nx, ny, WEIGHT_WIDTH_MM / WIDTH_PER_DEVIATION / pixelMm);
+  const weight = gaussianSpread(touch, nx, WEIGHT_WIDTH_MM / WIDTH_PER_DEVIATION / pixelMm);
   let sum = 0;
   for (let i = 0; i < values.length; i++)
     if (!Number.isNaN(values[i])) sum += weight[i] * Math.abs(values[i]);

@@ -1,4 +1,4 @@
-import { goodSize, inverseRealFft2, realFft2, type Spectrum2 } from '../grid/fft.js';
+import { emptySpectrum, goodSize, inverseRealFft2, realFft2, type Spectrum2 } from '../grid/fft.js';
 import { type Grid2, makeGrid } from '../grid/grid.js';
 import { crop, padWithZeros } from '../grid/padding.js';
 import { derivativeWavenumbers, wavenumbers } from '../grid/wavenumbers.js';
@@ -22,38 +22,43 @@ export function paddedSpectrum(field: Grid2<'G'>, sides: Sides): Spectrum2 {
 /**
  * Multiplies a spectrum of the vertical field by -i kx / k ('x') or -i ky / k ('y'): the horizontal
  * component of the current-free field above it at height 0 (Nakagawa & Raadu 1972, Sol. Phys. 25,
- * 127, with alpha = 0). The mean (k = 0) has no horizontal field.
+ * 127, with alpha = 0). The mean (k = 0) has no horizontal field. Writes into `out` where it is given.
  */
-export function horizontalSpectrum(vertical: Spectrum2, direction: 'x' | 'y'): Spectrum2 {
+export function horizontalSpectrum(
+  vertical: Spectrum2,
+  direction: 'x' | 'y',
+  out: Spectrum2 = emptySpectrum(vertical.nx, vertical.ny),
+): Spectrum2 {
   const { nx, ny, columns } = vertical;
   const kx = wavenumbers(nx, 1);
   const ky = wavenumbers(ny, 1);
-  const along = direction === 'x' ? derivativeWavenumbers(nx, 1) : derivativeWavenumbers(ny, 1);
-  const re = new Float64Array(columns * ny);
-  const im = new Float64Array(columns * ny);
+  const alongX = derivativeWavenumbers(nx, 1);
+  const alongY = derivativeWavenumbers(ny, 1);
   for (let y = 0; y < ny; y++) {
+    const across = ky[y] * ky[y];
     for (let x = 0; x < columns; x++) {
-      const k = Math.sqrt(kx[x] * kx[x] + ky[y] * ky[y]);
-      if (k === 0) continue;
-      const gain = (direction === 'x' ? along[x] : along[y]) / k;
+      const along = direction === 'x' ? alongX[x] : alongY[y];
+      const square = kx[x] * kx[x] + across;
+      const gain = square > 0 ? along / Math.sqrt(square) : 0;
       const i = x + columns * y;
-      re[i] = gain * vertical.im[i];
-      im[i] = -gain * vertical.re[i];
+      out.re[i] = gain * vertical.im[i];
+      out.im[i] = -gain * vertical.re[i];
     }
   }
-  return { nx, ny, columns, re, im };
+  return out;
 }
 
 /**
  * Horizontal components [G] at the surface of the current-free field whose vertical component is
- * `radial` [G]; both with the shape of the map, x west and y north.
+ * `radial` [G]; both with the shape of the map, x west and y north. `spectrum` is the map's padded
+ * spectrum, where the caller has it already.
  */
 export function potentialHorizontalField(
   radial: Grid2<'G'>,
   sides: Sides,
+  spectrum: Spectrum2 = paddedSpectrum(radial, sides),
 ): { readonly x: Grid2<'G'>; readonly y: Grid2<'G'> } {
   const [ny, nx] = radial.values.shape;
-  const spectrum = paddedSpectrum(radial, sides);
   const component = (direction: 'x' | 'y') =>
     makeGrid(
       crop(inverseRealFft2(horizontalSpectrum(spectrum, direction)), spectrum.nx, nx, ny),

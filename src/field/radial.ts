@@ -1,6 +1,6 @@
 import type { LocalPatch } from '../geometry/patch.js';
 import { PIXEL_GOOD } from '../geometry/patch.js';
-import { goodSize, inverseRealFft2, realFft2, type Spectrum2 } from '../grid/fft.js';
+import { emptySpectrum, goodSize, inverseRealFft2, realFft2, type Spectrum2 } from '../grid/fft.js';
 import { type Grid2, makeGrid } from '../grid/grid.js';
 import { derivativeWavenumbers, wavenumbers } from '../grid/wavenumbers.js';
 import { horizontalSpectrum } from './potential.js';
@@ -10,14 +10,15 @@ export type RadialMethod = 'potential' | 'mu' | 'given';
 
 /** Below this cosine (80 degrees) dividing by mu only amplifies noise; the divisor stops here. */
 const LEAST_MU = 0.17;
-/** The view changes over a patch; each pass halves what that leaves, and three reach noise. */
-const PASSES = 4;
+/** The view changes over a patch: three passes bring energy and flux within 0.5 % of the limit. */
+const PASSES = 3;
 
 /** Radial field [G] as line-of-sight field over mu: right where the field is radial (plage). */
 export function radialByMu(patch: LocalPatch): Grid2<'G'> {
   const b = patch.field.values.data;
   const mu = patch.toObserver.z;
-  const out = Float64Array.from(b, (value, i) => value / Math.max(mu[i], LEAST_MU));
+  const out = new Float64Array(b.length);
+  for (let i = 0; i < b.length; i++) out[i] = b[i] / Math.max(mu[i], LEAST_MU);
   return makeGrid(out, patch.nx, patch.ny, 'G', patch.pixelMm);
 }
 
@@ -72,49 +73,56 @@ function addInverse(radial: Spectrum2, residual: Spectrum2, view: View): void {
  * Missing pixels do not constrain the field and are NaN in the result.
  */
 export function radialByPotential(patch: LocalPatch): Grid2<'G'> {
-  const { nx, ny } = patch;
+  const { nx, ny, mask } = patch;
   const px = goodSize(Math.ceil(1.5 * nx));
   const py = goodSize(Math.ceil(1.5 * ny));
-  const measured = patch.field.values.data;
-  const { x: viewX, y: viewY, z: viewZ } = patch.toObserver;
   const view = meanView(patch);
+  const radial = emptySpectrum(px, py);
+  const scratch = emptySpectrum(px, py);
   const residual = new Float64Array(px * py);
-  let radial: Spectrum2 | undefined;
-  let result: Float64Array = residual;
-  for (let pass = 0; ; pass++) {
-    const bz = radial ? inverseRealFft2(radial) : undefined;
-    if (bz && pass === PASSES) {
-      result = bz;
-      break;
+  const field = { x: emptyMap(px, py), y: emptyMap(px, py), z: emptyMap(px, py) };
+  for (let pass = 0; pass < PASSES; pass++) {
+    if (pass > 0) {
+      inverseRealFft2(horizontalSpectrum(radial, 'x', scratch), field.x);
+      inverseRealFft2(horizontalSpectrum(radial, 'y', scratch), field.y);
+      inverseRealFft2(radial, field.z);
     }
-    const bx = radial ? inverseRealFft2(horizontalSpectrum(radial, 'x')) : undefined;
-    const by = radial ? inverseRealFft2(horizontalSpectrum(radial, 'y')) : undefined;
-    for (let j = 0; j < ny; j++) {
-      for (let i = 0; i < nx; i++) {
-        const p = i + nx * j;
-        const q = i + px * j;
-        if (patch.mask[p] !== PIXEL_GOOD) continue;
-        const modelled =
-          bx && by && bz ? viewX[p] * bx[q] + viewY[p] * by[q] + viewZ[p] * bz[q] : 0;
-        residual[q] = measured[p] - modelled;
-      }
-    }
-    const spectrum = realFft2(residual, px, py);
-    radial ??= {
-      ...spectrum,
-      re: new Float64Array(spectrum.re.length),
-      im: new Float64Array(spectrum.im.length),
-    };
-    addInverse(radial, spectrum, view);
+    writeResidual(patch, field, residual, px);
+    addInverse(radial, realFft2(residual, px, py, scratch), view);
   }
+  inverseRealFft2(radial, field.z);
   const out = new Float64Array(nx * ny);
   for (let j = 0; j < ny; j++) {
     for (let i = 0; i < nx; i++) {
       const p = i + nx * j;
-      out[p] = patch.mask[p] === PIXEL_GOOD ? result[i + px * j] : Number.NaN;
+      out[p] = mask[p] === PIXEL_GOOD ? field.z[i + px * j] : Number.NaN;
     }
   }
   return makeGrid(out, nx, ny, 'G', patch.pixelMm);
+}
+
+function emptyMap(nx: number, ny: number): Float64Array {
+  return new Float64Array(nx * ny);
+}
+
+/** Measured less modelled line-of-sight field, on the corner of the padded map that the patch fills. */
+function writeResidual(
+  patch: LocalPatch,
+  field: { readonly x: Float64Array; readonly y: Float64Array; readonly z: Float64Array },
+  residual: Float64Array,
+  px: number,
+): void {
+  const { nx, ny, mask } = patch;
+  const { x, y, z } = patch.toObserver;
+  const measured = patch.field.values.data;
+  for (let j = 0; j < ny; j++) {
+    for (let i = 0; i < nx; i++) {
+      const p = i + nx * j;
+      if (mask[p] !== PIXEL_GOOD) continue;
+      const q = i + px * j;
+      residual[q] = measured[p] - x[p] * field.x[q] - y[p] * field.y[q] - z[p] * field.z[q];
+    }
+  }
 }
 
 /** Radial field [G] of a patch by the method named; a patch that holds it already is returned as it is. */

@@ -4,7 +4,7 @@ import type { FieldNoise } from '../energy/spectral-energy.js';
 import { type AlphaBelief, alphaPrior, assumedAlpha, beliefQuantile } from '../field/alpha.js';
 import { areaAbove, STRONG_AREA_FIELD_G, sumFlux } from '../field/flux.js';
 import type { InversionLine } from '../field/inversion-line.js';
-import type { Sides } from '../field/potential.js';
+import { paddedSpectrum, type Sides } from '../field/potential.js';
 import { type RadialMethod, radialByMu, radialField } from '../field/radial.js';
 import { type LocalPatch, PIXEL_GOOD, PIXEL_MISSING } from '../geometry/patch.js';
 import type { Grid2 } from '../grid/grid.js';
@@ -141,7 +141,8 @@ export function analyseRegion(patch: LocalPatch, options: AnalysisOptions): Regi
   const quantities: Quantities = fluxQuantities(radial, other, noise);
   const flags: string[] = fluxFlags(patch, quantities, method);
 
-  const potential = potentialEnergy(radial, noise, sides);
+  const spectrum = paddedSpectrum(radial, sides);
+  const potential = potentialEnergy(radial, noise, sides, spectrum);
   const spread =
     other === radial
       ? 0
@@ -178,7 +179,7 @@ export function analyseRegion(patch: LocalPatch, options: AnalysisOptions): Regi
   const circuit = circuitQuantities(radial, noise);
   Object.assign(quantities, circuit.quantities);
   flags.push(...circuit.flags);
-  const lines = lineQuantities(radial, noise, sides);
+  const lines = lineQuantities(radial, noise, sides, spectrum);
   Object.assign(quantities, lines.quantities);
   flags.push(...lines.flags);
 

@@ -1,13 +1,16 @@
 import {
   type InversionLine,
+  inversionLines,
   LEAST_HORIZONTAL_G,
-  measureInversionLines,
-  prepareInversionLine,
-  traceInversionLines,
+  measureInversionLine,
+  SMOOTHING_WIDTH_MM,
+  traceZeroLine,
 } from '../field/inversion-line.js';
 import { nearLineFlux } from '../field/near-line-flux.js';
 import { potentialHorizontalField, type Sides } from '../field/potential.js';
+import type { Spectrum2 } from '../grid/fft.js';
 import type { Grid2 } from '../grid/grid.js';
+import { WIDTH_PER_DEVIATION } from '../grid/smooth.js';
 import type { PatchNoise } from './analyse-region.js';
 import { type Quantity, type QuantityKey, quantity } from './quantity.js';
 
@@ -17,14 +20,22 @@ const NEAR_LINE_THRESHOLD_G = 150;
 
 type Quantities = Partial<Record<QuantityKey, Quantity>>;
 
+/** Noise [G] of the field smoothed for its zero line: a Gaussian of deviation s averages 4 pi s^2. */
+function smoothedNoise(pixelMm: number, noise: PatchNoise): number {
+  const blurMm = Math.max(SMOOTHING_WIDTH_MM, 1.5 * pixelMm) / WIDTH_PER_DEVIATION;
+  return noise.deviationG * Math.min(1, Math.sqrt(noise.cellMm2 / (4 * Math.PI * blurMm ** 2)));
+}
+
 /**
  * Inversion-line measures with intervals from moving each threshold by the noise of what it is
- * compared with; the lengths and fluxes are monotone in them.
+ * compared with; the lengths and fluxes are monotone in them. `spectrum` is the padded spectrum of the
+ * field, where the caller has it already.
  */
 export function lineQuantities(
   radial: Grid2<'G'>,
   noise: PatchNoise,
   sides: Sides,
+  spectrum?: Spectrum2,
 ): {
   readonly lines: readonly InversionLine[];
   readonly quantities: Quantities;
@@ -38,28 +49,25 @@ export function lineQuantities(
         `inversion-line measures left out: pixels of ${radial.pixelMm.toPrecision(2)} Mm are too coarse, wanted at most ${COARSEST_PIXEL_MM} Mm`,
       ],
     };
-  const inputs = prepareInversionLine(radial, potentialHorizontalField(radial, sides));
-  // A Gaussian of deviation s averages 4 pi s^2 pixels; its gradient has 1 / (sqrt 2 s) of the noise.
-  const blurMm = inputs.blurPixels * radial.pixelMm;
-  const smoothedG =
-    noise.deviationG * Math.min(1, Math.sqrt(noise.cellMm2 / (4 * Math.PI * blurMm ** 2)));
-  const gradientNoise = smoothedG / (Math.SQRT2 * blurMm);
-  const lines = traceInversionLines(inputs, Math.max(LEAST_HORIZONTAL_G, 3 * smoothedG));
-  const measured = measureInversionLines(lines, inputs);
-  const fewer = measureInversionLines(lines, inputs, smoothedG, gradientNoise);
-  const more = measureInversionLines(lines, inputs, -smoothedG, -gradientNoise);
-  const lengthAt = (shift: number) =>
-    measureInversionLines(traceInversionLines(inputs, LEAST_HORIZONTAL_G + shift), inputs).lengthMm;
+  const horizontal = potentialHorizontalField(radial, sides, spectrum);
+  const smoothedG = smoothedNoise(radial.pixelMm, noise);
+  const least = Math.max(LEAST_HORIZONTAL_G, 3 * smoothedG);
+  const zero = traceZeroLine(radial, horizontal, least);
+  // The gradient of a Gaussian average of deviation s has 1 / (sqrt 2 s) of its noise.
+  const gradientNoise = smoothedG / (Math.SQRT2 * zero.blurMm);
+  const measured = measureInversionLine(zero, least);
+  const fewer = measureInversionLine(zero, least + smoothedG, smoothedG, gradientNoise);
+  const more = measureInversionLine(zero, least - smoothedG, -smoothedG, -gradientNoise);
   const near = (shift: number) => nearLineFlux(radial, NEAR_LINE_THRESHOLD_G + shift);
   const one = noise.pixelDeviationG;
   return {
-    lines,
+    lines: inversionLines(zero, least),
     quantities: {
       inversion_line_length: quantity(
         'inversion_line_length',
         measured.lengthMm,
-        lengthAt(Math.max(smoothedG, 3 * smoothedG - LEAST_HORIZONTAL_G)),
-        lengthAt(-Math.min(smoothedG, LEAST_HORIZONTAL_G / 2)),
+        fewer.lengthMm,
+        more.lengthMm,
         'extrapolated',
       ),
       strong_gradient_line_length: quantity(

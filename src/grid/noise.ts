@@ -1,6 +1,6 @@
 /** Ratio of a normal deviation to its median absolute deviation. */
 const DEVIATION_PER_MEDIAN = 1.4826;
-const LARGEST_SAMPLE = 60_000;
+const LARGEST_SAMPLE = 20_000;
 /**
  * Distance in pixels of the second difference. Far enough that neighbours which share noise through
  * an instrument's blur or an earlier resampling count as independent, near enough that smooth field

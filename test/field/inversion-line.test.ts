@@ -1,8 +1,8 @@
 import { describe, expect, it } from 'vitest';
 import {
-  measureInversionLines,
-  prepareInversionLine,
-  traceInversionLines,
+  inversionLines,
+  measureInversionLine,
+  traceZeroLine,
 } from '../../src/field/inversion-line.js';
 import { nearLineFlux } from '../../src/field/near-line-flux.js';
 import { potentialHorizontalField } from '../../src/field/potential.js';
@@ -20,9 +20,11 @@ function wall(n: number, pixelMm: number, peak: number, width: number) {
 }
 
 function measure(field: ReturnType<typeof wall>, leastHorizontal = 50) {
-  const inputs = prepareInversionLine(field, potentialHorizontalField(field, 'open'));
-  const lines = traceInversionLines(inputs, leastHorizontal);
-  return { lines, ...measureInversionLines(lines, inputs) };
+  const zero = traceZeroLine(field, potentialHorizontalField(field, 'open'), leastHorizontal);
+  return {
+    lines: inversionLines(zero, leastHorizontal),
+    ...measureInversionLine(zero, leastHorizontal),
+  };
 }
 
 describe('inversion line', () => {

@@ -7,7 +7,7 @@ describe('Gaussian blur', () => {
   it('spreads a point to a Gaussian of the asked width and keeps its sum', () => {
     const point = new Float64Array(41 * 41);
     point[20 + 41 * 20] = 1;
-    const out = gaussianSpread(point, 41, 41, 3);
+    const out = gaussianSpread(point, 41, 3);
     expect(out.reduce((a, b) => a + b)).toBeCloseTo(1, 10);
     const half = (WIDTH_PER_DEVIATION * 3) / 2;
     expect(bilinear(out, 41, 41, 20 + half, 20) / out[20 + 41 * 20]).toBeCloseTo(0.5, 1.7);
@@ -24,7 +24,7 @@ describe('Gaussian blur', () => {
 
   it('loses over the edge where nothing is renormalised', () => {
     const flat = new Float64Array(20 * 20).fill(1);
-    expect(gaussianSpread(flat, 20, 20, 2)[0]).toBeLessThan(0.5);
+    expect(gaussianSpread(flat, 20, 2)[0]).toBeLessThan(0.5);
   });
 });
 
