@@ -17,7 +17,11 @@ const root = join(dirname(fileURLToPath(import.meta.url)), '..');
 const sources = join(root, 'src/grid/kernel');
 const target = join(root, 'dist/grid/fft.wasm');
 const stamp = `${target}.sources`;
-const options = ['-O3', '--enable', 'simd', '--runtime', 'stub', '--noAssert', '--importMemory'];
+const options = [
+  ...['-O3', '--enable', 'simd', '--runtime', 'stub', '--noAssert', '--importMemory'],
+  // A memory with a maximum may also be a shared one (see kernel-loader.ts).
+  ...['--maximumMemory', '65536'],
+];
 
 /** A hash of everything the module is made from. */
 function sourceHash() {

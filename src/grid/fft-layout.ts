@@ -14,13 +14,28 @@ export interface FftLayout {
   readonly columnPlan: FftPlan;
   /** Rows that a row kernel takes at once. */
   readonly batch: number;
+  readonly jobAt: number;
   readonly rowPlanAt: number;
   readonly columnPlanAt: number;
   readonly turnAt: number;
-  readonly scratchAt: readonly [a: number, b: number, c: number, row: number, odd: number];
-  /** A batch of real rows, or of rows of the spectrum: real parts, and imaginary parts elsewhere. */
+  /** For each thread. */
+  readonly scratchAt: readonly (readonly [
+    a: number,
+    b: number,
+    c: number,
+    row: number,
+    odd: number,
+  ])[];
+  /** One flag, an i32, for each unit of work. */
+  readonly flagsAt: number;
+  /** A batch of real rows, or of rows of the spectrum: all real parts, then all imaginary parts. */
   readonly stagingAt: number;
-  readonly imaginaryAt: number;
+  /** From one batch in staging to the next; 0 for one thread, which needs but one. */
+  readonly slotBytes: number;
+  /** From the real to the imaginary parts in staging. */
+  readonly imaginaryBytes: number;
+  /** Batches of rows. */
+  readonly batches: number;
   /** Tiles of eight columns; with nx even, the last column lies in the imaginary parts of the first. */
   readonly tiles: number;
   readonly tiledColumns: number;
@@ -29,8 +44,8 @@ export interface FftLayout {
   readonly bytes: number;
 }
 
-/** The layout for nx * ny real values: about 16 bytes for each mode kept, and see fft-kernel.ts. */
-export function layOut(nx: number, ny: number): FftLayout {
+/** The layout for nx * ny real values and a number of threads; for its size see fft-kernel.ts. */
+export function layOut(nx: number, ny: number, threads: number): FftLayout {
   const even = nx % 2 === 0;
   const columns = (nx >> 1) + 1;
   const rowPlan = fftPlan(even ? nx / 2 : nx);
@@ -48,8 +63,11 @@ export function layOut(nx: number, ny: number): FftLayout {
   const tiles = Math.ceil(tiledColumns / 8);
   // Whole batches of rows are written, the last perhaps past the end of the map. An odd number of
   // kilobytes from tile to tile keeps the tiles from competing for the same lines of a cache.
-  const rows = Math.ceil(ny / batch) * batch;
-  const tileBytes = 1024 * (Math.ceil((rows * POINT) / 1024) | 1);
+  const batches = Math.ceil(ny / batch);
+  const tileBytes = 1024 * (Math.ceil((batches * batch * POINT) / 1024) | 1);
+  const imaginaryBytes = 8 * batch * columns;
+  const slot = CACHE_PAGE * Math.ceil((2 * imaginaryBytes) / CACHE_PAGE);
+  const slotBytes = threads > 1 ? slot : 0;
   const layout = {
     nx,
     ny,
@@ -58,24 +76,52 @@ export function layOut(nx: number, ny: number): FftLayout {
     rowPlan,
     columnPlan,
     batch,
+    jobAt: take(128),
     rowPlanAt: take(rowPlan.bytes.length),
     columnPlanAt: take(columnPlan.bytes.length),
     turnAt: take(16 * ((nx >> 2) + 1)),
     // A pass reads one buffer and writes another, in strides that may be powers of two: half a page
     // apart, they use different lines of the first cache.
-    scratchAt: [
-      take(points, 2048),
-      take(points),
-      take(chirped ? points : 0),
-      take(points + POINT),
-      take(CACHE_PAGE),
-    ] as const,
-    stagingAt: take(8 * batch * Math.max(nx, columns)),
-    imaginaryAt: take(8 * batch * columns),
+    scratchAt: Array.from(
+      { length: threads },
+      () =>
+        [
+          take(points, 2048),
+          take(points),
+          take(chirped ? points : 0),
+          take(points + POINT),
+          take(CACHE_PAGE),
+        ] as const,
+    ),
+    flagsAt: take(4 * Math.max(tiles, batches)),
+    stagingAt: take(slot * (threads > 1 ? batches : 1)),
+    slotBytes,
+    imaginaryBytes,
+    batches,
     tiles,
     tiledColumns,
     tileBytes,
     tilesAt: take(tiles * tileBytes),
   };
   return { ...layout, bytes: at };
+}
+
+/** The numbers of a job as kernel/units.ts reads them. */
+export function jobNumbers(layout: FftLayout): number[] {
+  return [
+    layout.nx,
+    layout.ny,
+    layout.even ? 1 : 0,
+    layout.columns,
+    layout.tiledColumns,
+    layout.batch,
+    layout.rowPlanAt,
+    layout.columnPlanAt,
+    layout.turnAt,
+    layout.stagingAt,
+    layout.slotBytes,
+    layout.imaginaryBytes,
+    layout.tilesAt,
+    layout.tileBytes,
+  ];
 }

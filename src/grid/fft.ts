@@ -6,6 +6,7 @@ import { portableInverseRealFft2, portableRealFft2 } from './portable-fft.js';
 import { emptySpectrum, type Spectrum2 } from './spectrum.js';
 
 export { goodSize } from './fft-plan.js';
+export { setTransformThreads } from './fft-threads.js';
 export { emptySpectrum, type Spectrum2 } from './spectrum.js';
 
 /**

@@ -6,7 +6,7 @@ declare namespace WebAssembly {
   }
   class Memory {
     constructor(descriptor: { initial: number; maximum: number; shared?: boolean });
-    readonly buffer: ArrayBuffer;
+    readonly buffer: ArrayBufferLike;
     grow(pages: number): number;
   }
   class Instance {

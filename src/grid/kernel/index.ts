@@ -1,5 +1,3 @@
-// The compiled module: what src/grid/fft-kernel.ts may call.
-export { forwardEvenRows, inverseEvenRows } from './even-rows';
-export { forwardOddRows, inverseOddRows } from './odd-rows';
+// The compiled module: what the host (fft-kernel.ts, fft-threads.ts) may call.
 export { setScratch } from './scratch';
-export { readEdges, readRows, transformTiles, writeRowsSwapped } from './tiles';
+export { runUnit } from './units';

@@ -3,12 +3,6 @@
 // read from it eight at a time, in runs of a kilobyte.
 // `tiles` is the address of the first tile's first row wanted, `tileBytes` the way from tile to tile.
 import { IMAGINARY, POINT } from './scratch';
-import { transform } from './transform';
-
-/** Transforms the tiles `from` .. `to - 1` down their columns. */
-export function transformTiles(plan: usize, tiles: usize, tileBytes: usize, from: usize, to: usize): void {
-  for (let t = from; t < to; t++) transform(plan, tiles + t * tileBytes);
-}
 
 /** `count` rows of `columns` numbers from the tiles to rows of `pitch` bytes at `re` and `im`. */
 export function readRows(tiles: usize, tileBytes: usize, count: usize, columns: usize, pitch: usize, re: usize, im: usize): void {
