@@ -132,7 +132,9 @@ export function regionSummary(
     (flag) => wrap(`- ${flag}`, WIDTH),
   );
   return [
-    ink.strong(`${figures.id}  ${context.source}  ${context.observed?.replace('.000Z', 'Z') ?? 'time not known'}`),
+    ink.strong(
+      `${figures.id}  ${context.source}  ${context.observed?.replace('.000Z', 'Z') ?? 'time not known'}`,
+    ),
     `${heading(figures)}; noise ${context.noise}`,
     '',
     ink.quiet(head),
