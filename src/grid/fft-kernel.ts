@@ -1,7 +1,7 @@
 // The compiled transforms: copies rows in and out of the module's memory and has its kernels run,
 // by this thread alone or with others. Peak memory: one copy of the spectrum (16 bytes a mode),
 // about 500 bytes for each point of the longer side (four times as much for a side with a prime
-// factor above 61) and a batch of rows, in the module's memory. That is kept for the next transform
+// factor above 83) and a batch of rows, in the module's memory. That is kept for the next transform
 // up to 256 MiB and let go above. With threads there is a second copy of the spectrum, and the
 // memory stays until setTransformThreads(1).
 import { type FftLayout, jobNumbers, layOut } from './fft-layout.js';
