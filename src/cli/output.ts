@@ -1,6 +1,6 @@
 import { randomBytes } from 'node:crypto';
-import { mkdirSync, renameSync, rmSync, writeFileSync } from 'node:fs';
-import { basename, dirname, join } from 'node:path';
+import { existsSync, mkdirSync, renameSync, rmSync, statSync, writeFileSync } from 'node:fs';
+import { basename, dirname, join, resolve } from 'node:path';
 import { setImmediate } from 'node:timers/promises';
 import { DataError } from '../errors.js';
 
@@ -8,6 +8,7 @@ import { DataError } from '../errors.js';
 function reasonOf(error: unknown): string {
   const { code, message } = error as NodeJS.ErrnoException;
   const known: Record<string, string> = {
+    ENOENT: 'there is no such place',
     EACCES: 'permission denied',
     EPERM: 'permission denied',
     EROFS: 'the file system is read-only',
@@ -23,7 +24,13 @@ function reasonOf(error: unknown): string {
 /** Makes a folder for results. Throws DataError when that cannot be done. */
 export function makeOutputFolder(folder: string): void {
   try {
-    mkdirSync(folder, { recursive: true });
+    // Folder by folder: Node's own recursive mkdir never returns where a parent refuses (as /proc).
+    const missing: string[] = [];
+    let parent = resolve(folder);
+    for (; !existsSync(parent); parent = dirname(parent)) missing.push(parent);
+    if (!statSync(parent).isDirectory())
+      throw Object.assign(new Error('not a directory'), { code: 'ENOTDIR' });
+    for (const path of missing.reverse()) mkdirSync(path);
   } catch (error) {
     throw new DataError(
       `cannot make the output folder: ${reasonOf(error)}`,

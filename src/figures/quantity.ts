@@ -12,38 +12,44 @@ export interface Quantity {
   readonly basis: Basis;
 }
 
-/** The figures of the quick look in the order they are shown, with unit and plain name. */
+/**
+ * The figures of the quick look in the order they are shown, with unit, plain name and the sign that the
+ * law gives them (0: either).
+ */
 export const QUANTITY_FACTS = {
-  positive_flux: { unit: 'Mx', label: 'positive flux' },
-  negative_flux: { unit: 'Mx', label: 'negative flux' },
-  unsigned_flux: { unit: 'Mx', label: 'unsigned flux' },
-  net_flux: { unit: 'Mx', label: 'net flux' },
-  flux_imbalance: { unit: '1', label: 'flux imbalance' },
-  peak_positive_field: { unit: 'G', label: 'peak positive field' },
-  peak_negative_field: { unit: 'G', label: 'peak negative field' },
-  strong_field_area: { unit: 'Mm^2', label: 'strong-field area' },
-  potential_energy: { unit: 'J', label: 'potential energy' },
-  free_energy: { unit: 'J', label: 'free energy' },
-  free_energy_ceiling: { unit: 'J', label: 'free-energy ceiling' },
-  total_energy: { unit: 'J', label: 'total energy' },
-  upward_current: { unit: 'A', label: 'upward current' },
-  downward_current: { unit: 'A', label: 'downward current' },
-  net_current_positive: { unit: 'A', label: 'net current, positive' },
-  net_current_negative: { unit: 'A', label: 'net current, negative' },
-  peak_current_density: { unit: 'mA/m^2', label: 'peak current density' },
-  force_free_alpha: { unit: '1/Mm', label: 'force-free alpha' },
-  inversion_line_length: { unit: 'Mm', label: 'inversion line' },
-  strong_gradient_line_length: { unit: 'Mm', label: 'strong-gradient line' },
-  gradient_weighted_line_length: { unit: 'G', label: 'gradient-weighted line' },
-  near_line_flux: { unit: 'Mx', label: 'near-line flux' },
-  inductance: { unit: 'H', label: 'inductance' },
-  lundquist_number: { unit: '1', label: 'Lundquist number' },
-} as const satisfies Record<string, { unit: QuantityUnit; label: string }>;
+  positive_flux: { sign: 1, unit: 'Mx', label: 'positive flux' },
+  negative_flux: { sign: -1, unit: 'Mx', label: 'negative flux' },
+  unsigned_flux: { sign: 1, unit: 'Mx', label: 'unsigned flux' },
+  net_flux: { sign: 0, unit: 'Mx', label: 'net flux' },
+  flux_imbalance: { sign: 0, unit: '1', label: 'flux imbalance' },
+  peak_positive_field: { sign: 1, unit: 'G', label: 'peak positive field' },
+  peak_negative_field: { sign: -1, unit: 'G', label: 'peak negative field' },
+  strong_field_area: { sign: 1, unit: 'Mm^2', label: 'strong-field area' },
+  potential_energy: { sign: 1, unit: 'J', label: 'potential energy' },
+  free_energy: { sign: 1, unit: 'J', label: 'free energy' },
+  free_energy_ceiling: { sign: 1, unit: 'J', label: 'free-energy ceiling' },
+  total_energy: { sign: 1, unit: 'J', label: 'total energy' },
+  upward_current: { sign: 1, unit: 'A', label: 'upward current' },
+  downward_current: { sign: -1, unit: 'A', label: 'downward current' },
+  net_current_positive: { sign: 0, unit: 'A', label: 'net current, positive' },
+  net_current_negative: { sign: 0, unit: 'A', label: 'net current, negative' },
+  peak_current_density: { sign: 1, unit: 'mA/m^2', label: 'peak current density' },
+  force_free_alpha: { sign: 0, unit: '1/Mm', label: 'force-free alpha' },
+  inversion_line_length: { sign: 1, unit: 'Mm', label: 'inversion line' },
+  strong_gradient_line_length: { sign: 1, unit: 'Mm', label: 'strong-gradient line' },
+  gradient_weighted_line_length: { sign: 1, unit: 'G', label: 'gradient-weighted line' },
+  near_line_flux: { sign: 1, unit: 'Mx', label: 'near-line flux' },
+  inductance: { sign: 1, unit: 'H', label: 'inductance' },
+  lundquist_number: { sign: 1, unit: '1', label: 'Lundquist number' },
+} as const satisfies Record<string, { sign: -1 | 0 | 1; unit: QuantityUnit; label: string }>;
 
 export type QuantityKey = keyof typeof QUANTITY_FACTS;
 export const QUANTITY_KEYS = Object.keys(QUANTITY_FACTS) as readonly QuantityKey[];
 
-/** A quantity of its key's unit. */
+/**
+ * A quantity of its key's unit. Noise may carry an estimate or its interval across zero where the law
+ * allows one sign only: both end at zero then. Null throughout where a number is not finite.
+ */
 export function quantity(
   key: QuantityKey,
   value: number,
@@ -51,10 +57,17 @@ export function quantity(
   high: number,
   basis: Basis,
 ): Quantity {
-  const { unit } = QUANTITY_FACTS[key];
+  const { unit, sign } = QUANTITY_FACTS[key];
   if (![value, low, high].every(Number.isFinite))
     return { value: null, low: null, high: null, unit, basis };
-  return { value, low: Math.min(low, value), high: Math.max(high, value), unit, basis };
+  const lawful = (number: number) => (sign * number < 0 ? 0 : number);
+  return {
+    value: lawful(value),
+    low: lawful(Math.min(low, value)),
+    high: lawful(Math.max(high, value)),
+    unit,
+    basis,
+  };
 }
 
 /** A quantity with a symmetric interval of one `sigma`. */

@@ -38,8 +38,8 @@ export function unitText(unit: string): string {
 }
 
 /**
- * Formats a figure with its interval. The power of ten is a multiple of 3 and is left out for sizes
- * from 0.001 to 99 999. The last digit kept is the second significant digit of half the interval,
+ * Formats a figure with its interval. The power of ten is that of the value (of half the interval, for a value
+ * a hundred times smaller), a multiple of 3, and is left out for sizes from 0.001 to 99 999. The last digit kept is the second significant digit of half the interval,
  * within 2 to 4 significant digits of the value (3 without an interval); value and interval are
  * rounded at the same digit; an end of the interval that is not zero is not rounded to it while
  * four digits allow. Null or non-finite values give "—".
@@ -52,9 +52,9 @@ export function quantityText(quantity: Quantity): QuantityText {
     low !== null && high !== null && Number.isFinite(low) && Number.isFinite(high)
       ? { low, high }
       : undefined;
-  const power = sharedPower(
-    value !== 0 ? value : Math.max(-(bounded?.low ?? 0), bounded?.high ?? 0),
-  );
+  const halfWidth = bounded ? (bounded.high - bounded.low) / 2 : 0;
+  const isLost = Math.abs(value) < halfWidth / 100;
+  const power = sharedPower(isLost ? halfWidth : value);
   const scale = 10 ** power;
   const ends = bounded ?? { low: value, high: value };
   const decimals = decimalPlaces(value / scale, ends.low / scale, ends.high / scale);

@@ -203,6 +203,12 @@ describe('spotjoule quicklook refuses in one line', () => {
 
   it('an output folder that cannot be', () => {
     writeFileSync(join(empty, 'taken'), '');
+    if (existsSync('/proc/self'))
+      expectRefusal(
+        spotjoule(empty, 'quicklook', SMALL, '--no-picture', '--out', '/proc/not/here'),
+        1,
+        /cannot make the output folder: there is no such place/,
+      );
     expectRefusal(
       spotjoule(empty, 'quicklook', SMALL, '--no-picture', '--out', 'taken'),
       1,

@@ -1,6 +1,12 @@
 import { describe, expect, it } from 'vitest';
 import { analyseRegion } from '../../src/figures/analyse-region.js';
-import { QUANTITY_FACTS, QUANTITY_KEYS, type QuantityKey } from '../../src/figures/quantity.js';
+import {
+  QUANTITY_FACTS,
+  QUANTITY_KEYS,
+  type QuantityKey,
+  quantity,
+  withSigma,
+} from '../../src/figures/quantity.js';
 import { makeGrid } from '../../src/grid/grid.js';
 import { BIPOLE, bipoleFlux, chargeEnergy, chargeField } from '../support/charges.js';
 import { flatPatch } from '../support/patch.js';
@@ -127,5 +133,27 @@ describe('intervals under noise', () => {
     expect(fluxHits).toBeGreaterThanOrEqual(13);
     expect(energyHits).toBeGreaterThanOrEqual(13);
     expect(energyHits).toBeLessThanOrEqual(29);
+  });
+});
+
+describe('a quantity', () => {
+  it('ends at zero where the law allows one sign only', () => {
+    expect(withSigma('inductance', 3, 7, 'prior')).toMatchObject({ value: 3, low: 0, high: 10 });
+    expect(withSigma('downward_current', -3, 7, 'prior')).toMatchObject({ low: -10, high: 0 });
+    expect(withSigma('net_flux', 3, 7, 'measured')).toMatchObject({ low: -4, high: 10 });
+    expect(withSigma('potential_energy', -3, 7, 'extrapolated')).toMatchObject({
+      value: 0,
+      high: 4,
+    });
+  });
+
+  it('is null throughout where a number is missing', () => {
+    expect(quantity('inductance', Number.NaN, 0, 1, 'prior')).toEqual({
+      value: null,
+      low: null,
+      high: null,
+      unit: 'H',
+      basis: 'prior',
+    });
   });
 });

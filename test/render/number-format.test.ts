@@ -67,6 +67,14 @@ describe('quantityText', () => {
     });
   });
 
+  it('takes the power of the interval for a value next to nothing beside it', () => {
+    expect(quantityText(figure(1e-17, -0.011, 0.011, '1/Mm'))).toEqual({
+      value: '0.000',
+      interval: '−0.011 to 0.011',
+      unit: 'Mm⁻¹',
+    });
+  });
+
   it('never writes a minus before nothing but zeros', () => {
     expect(quantityText(figure(-0.004, -3, 3, 'Mm')).value).toBe('0.0');
   });
