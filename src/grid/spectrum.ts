@@ -23,3 +23,15 @@ export function emptySpectrum(nx: number, ny: number): Spectrum2 {
     im: new Float64Array(columns * ny),
   };
 }
+
+/** As `emptySpectrum`, but of whatever numbers the memory held: for one who fills all of it. */
+export function unwrittenSpectrum(nx: number, ny: number): Spectrum2 {
+  const columns = (nx >> 1) + 1;
+  const re = unwrittenNumbers(columns * ny);
+  return { nx, ny, columns, re, im: unwrittenNumbers(columns * ny) };
+}
+
+/** Room for `count` numbers, not cleared: clearing takes a fifth of the time of a transform. */
+export function unwrittenNumbers(count: number): Float64Array {
+  return new Float64Array(Buffer.allocUnsafeSlow(8 * count).buffer);
+}
