@@ -18,8 +18,8 @@ const MAY_IMPORT: Readonly<Record<string, readonly string[]>> = {
   cli: ['grid', 'fits', 'geometry', 'field', 'currents', 'energy', 'figures', 'render', 'report'],
 };
 const PURE = ['grid', 'field', 'currents', 'energy', 'figures'];
-/** Finds the compiled transform beside the code, starts its second thread: the two places where grid touches Node. */
-const READS_DISK = ['grid/kernel-loader.ts', 'grid/fft-threads.ts'];
+/** Finds the compiled transform beside the code, starts its second thread, loads the fallback when wanted: where grid touches Node. */
+const READS_DISK = ['grid/kernel-loader.ts', 'grid/fft-threads.ts', 'grid/portable-fft.ts'];
 
 const files = readdirSync(SRC, { recursive: true, encoding: 'utf8' }).filter(
   (file) => file.endsWith('.ts') && !file.startsWith('grid/kernel/'),

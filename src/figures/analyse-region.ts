@@ -1,16 +1,20 @@
 import { linearCurrentMap } from '../currents/linear-current.js';
 import { freeEnergyCeiling, linearFreeEnergy, potentialEnergy } from '../energy/region-energy.js';
-import type { FieldNoise } from '../energy/spectral-energy.js';
+import type { Energy } from '../energy/spectral-energy.js';
 import { type AlphaBelief, alphaPrior, assumedAlpha, beliefQuantile } from '../field/alpha.js';
-import { areaAbove, STRONG_AREA_FIELD_G, sumFlux } from '../field/flux.js';
+import { sumFlux } from '../field/flux.js';
 import type { InversionLine } from '../field/inversion-line.js';
 import { paddedSpectrum, type Sides } from '../field/potential.js';
 import { type RadialMethod, radialByMu, radialField } from '../field/radial.js';
 import { type LocalPatch, PIXEL_GOOD, PIXEL_MISSING } from '../geometry/patch.js';
-import type { Grid2 } from '../grid/grid.js';
+import type { Spectrum2 } from '../grid/fft.js';
+import { type Grid2, makeGrid } from '../grid/grid.js';
+import { blockMean } from '../grid/rebin.js';
 import { circuitQuantities, currentQuantities } from './current-figures.js';
+import { fluxQuantities } from './flux-figures.js';
 import { lineQuantities } from './line-figures.js';
-import { type Quantity, type QuantityKey, quantity, withSigma } from './quantity.js';
+import { type PatchNoise, patchNoise, signalLeast, UNIFORM_DEVIATION } from './patch-noise.js';
+import { type Quantities, type Quantity, withSigma } from './quantity.js';
 import type { RegionFigures } from './region.js';
 
 /** How a region is worked out. */
@@ -36,95 +40,11 @@ export interface RegionAnalysis {
   readonly inversionLines: readonly InversionLine[];
 }
 
-/** Noise of the radial field over a patch and of one of its pixels [G]. */
-export interface PatchNoise extends FieldNoise {
-  readonly pixelDeviationG: number;
-}
-
-/** Foreshortening raises the noise of the radial field and the area of a source pixel, both by 1/mu. */
-function patchNoise(patch: LocalPatch, options: AnalysisOptions): PatchNoise {
-  const mu = Math.max(0.17, patch.center.mu);
-  const deviationG = patch.component === 'radial' ? options.noiseG : options.noiseG / mu;
-  const cellMm2 = options.sourcePixelMm ** 2 / (patch.component === 'radial' ? 1 : mu);
-  const share = Math.min(1, Math.sqrt(cellMm2 / patch.pixelMm ** 2));
-  return { deviationG, cellMm2, pixelDeviationG: deviationG * share };
-}
-
 function heliographicName({ stonyhurstLongitudeDeg, stonyhurstLatitudeDeg }: LocalPatch['center']) {
   const two = (deg: number) => String(Math.abs(Math.round(deg))).padStart(2, '0');
   const ns = stonyhurstLatitudeDeg < 0 ? 'S' : 'N';
   const ew = stonyhurstLongitudeDeg < 0 ? 'E' : 'W';
   return `${ns}${two(stonyhurstLatitudeDeg)}${ew}${two(stonyhurstLongitudeDeg)}`;
-}
-
-/**
- * What the other way from the line of sight would give is taken as the far end of a uniform
- * distribution: its deviation is the width over sqrt(12).
- */
-const UNIFORM_DEVIATION = 1 / Math.sqrt(12);
-
-/**
- * A pixel at the threshold T = 3 sigma is in or out by chance: integrated over the crossing, the
- * variance is T^2 sigma / sqrt(pi) per unit of field, 9 / (2 sqrt pi) sigma^2 for each pixel within one sigma.
- */
-const EDGE_WEIGHT = 9 / (2 * Math.sqrt(Math.PI));
-
-type Quantities = Partial<Record<QuantityKey, Quantity>>;
-
-/**
- * Fluxes, peaks and area of the radial field. Flux sums count pixels above three noise deviations; their
- * errors join the noise, sigma sqrt(N pixel cell), with what the other way from the line of sight to
- * the radial field would change.
- */
-function fluxQuantities(radial: Grid2<'G'>, other: Grid2<'G'>, noise: PatchNoise): Quantities {
-  const least = 3 * noise.pixelDeviationG;
-  const sums = sumFlux(radial, least);
-  const others = sumFlux(other, least);
-  const pixelMm2 = radial.pixelMm ** 2;
-  const noiseOf = (pixels: number) =>
-    1e16 * noise.deviationG * Math.sqrt(pixels * pixelMm2 * noise.cellMm2);
-  const sigma = (pixels: number, here: number, there: number) =>
-    Math.hypot(noiseOf(pixels), UNIFORM_DEVIATION * (here - there));
-  const up = sums.positiveMx;
-  const down = sums.negativeMx;
-  const upPixels = sums.positivePixels + EDGE_WEIGHT * sums.positiveEdgePixels;
-  const downPixels = sums.negativePixels + EDGE_WEIGHT * sums.negativeEdgePixels;
-  const pixels = upPixels + downPixels;
-  const unsigned = up + down;
-  const unsignedSigma = sigma(pixels, unsigned, others.positiveMx + others.negativeMx);
-  const net = up - down;
-  const netSigma = sigma(pixels, net, others.positiveMx - others.negativeMx);
-  const area = (shift: number) => areaAbove(radial, STRONG_AREA_FIELD_G + shift);
-  const one = noise.pixelDeviationG;
-  const peak = (key: 'peak_positive_field' | 'peak_negative_field') => {
-    const field = key === 'peak_positive_field' ? 'peakPositiveG' : 'peakNegativeG';
-    return withSigma(
-      key,
-      sums[field],
-      Math.hypot(one, UNIFORM_DEVIATION * (sums[field] - others[field])),
-      'measured',
-    );
-  };
-  return {
-    positive_flux: withSigma(
-      'positive_flux',
-      up,
-      sigma(upPixels, up, others.positiveMx),
-      'measured',
-    ),
-    negative_flux: withSigma(
-      'negative_flux',
-      -down,
-      sigma(downPixels, down, others.negativeMx),
-      'measured',
-    ),
-    unsigned_flux: withSigma('unsigned_flux', unsigned, unsignedSigma, 'measured'),
-    net_flux: withSigma('net_flux', net, netSigma, 'measured'),
-    flux_imbalance: withSigma('flux_imbalance', net / unsigned, netSigma / unsigned, 'measured'),
-    peak_positive_field: peak('peak_positive_field'),
-    peak_negative_field: peak('peak_negative_field'),
-    strong_field_area: quantity('strong_field_area', area(0), area(one), area(-one), 'measured'),
-  };
 }
 
 /**
@@ -138,37 +58,21 @@ export function analyseRegion(patch: LocalPatch, options: AnalysisOptions): Regi
   const { field: radial, method } = radialField(patch, options.radialMethod ?? 'potential');
   const other = otherRadial(patch, radial, method);
   const noise = patchNoise(patch, options);
-  const quantities: Quantities = fluxQuantities(radial, other, noise);
-  const flags: string[] = fluxFlags(patch, quantities, method);
-
+  const sums = sumFlux(radial, signalLeast(noise));
   const spectrum = paddedSpectrum(radial, sides);
-  const potential = potentialEnergy(radial, noise, sides, spectrum);
-  const spread =
-    other === radial
-      ? 0
-      : UNIFORM_DEVIATION * (potential.joules - potentialEnergy(other, noise, sides).joules);
-  const potentialSigma = Math.hypot(potential.sigma, spread);
-  quantities.potential_energy = withSigma(
-    'potential_energy',
-    potential.joules,
-    potentialSigma,
-    'extrapolated',
-  );
+  const potential = potentialWithSpread(radial, other, noise, sides, spectrum);
   const ceiling = freeEnergyCeiling(radial, noise);
-  quantities.free_energy_ceiling = withSigma(
-    'free_energy_ceiling',
-    ceiling.joules,
-    ceiling.sigma,
-    'extrapolated',
-  );
+  const quantities: Quantities = {
+    ...fluxQuantities(radial, sums, other, noise),
+    potential_energy: energyQuantity('potential_energy', potential),
+    free_energy_ceiling: energyQuantity('free_energy_ceiling', ceiling),
+  };
+  const flags: string[] = fluxFlags(patch, quantities, method);
 
   const linear = linearFreeEnergy(radial, noise);
   const belief = alphaBelief(options, patch, linear.largestAlphaPerMm);
   if (belief) {
-    const currents = currentQuantities(belief, linear, radial, quantities, noise, {
-      joules: potential.joules,
-      sigma: potentialSigma,
-    });
+    const currents = currentQuantities({ belief, linear, sums, quantities, noise, potential });
     Object.assign(quantities, currents.quantities);
     flags.push(...currents.flags);
   } else {
@@ -176,7 +80,7 @@ export function analyseRegion(patch: LocalPatch, options: AnalysisOptions): Regi
       `free energy and currents cannot be had: alpha ${options.alphaPerMm} 1/Mm is not below the limit ${linear.largestAlphaPerMm.toPrecision(3)} 1/Mm of a patch this wide`,
     );
   }
-  const circuit = circuitQuantities(radial, noise);
+  const circuit = circuitQuantities(radial, sums);
   Object.assign(quantities, circuit.quantities);
   flags.push(...circuit.flags);
   const lines = lineQuantities(radial, noise, sides, spectrum);
@@ -197,6 +101,37 @@ export function analyseRegion(patch: LocalPatch, options: AnalysisOptions): Regi
     currentDensity: belief && linearCurrentMap(radial, shownAlpha(belief)),
     inversionLines: lines.lines,
   };
+}
+
+function energyQuantity(key: 'potential_energy' | 'free_energy_ceiling', energy: Energy): Quantity {
+  return withSigma(key, energy.joules, energy.sigma, 'extrapolated');
+}
+
+/**
+ * Potential energy whose error includes what the other way to the radial field would change, which half
+ * the resolution tells well enough.
+ */
+function potentialWithSpread(
+  radial: Grid2<'G'>,
+  other: Grid2<'G'>,
+  noise: PatchNoise,
+  sides: Sides,
+  spectrum: Spectrum2,
+): Energy {
+  const potential = potentialEnergy(radial, noise, sides, spectrum);
+  if (other === radial) return potential;
+  const [here, there] = [radial, other].map(
+    (field) => potentialEnergy(halveResolution(field), noise, sides).joules,
+  );
+  const sigma = Math.hypot(potential.sigma, UNIFORM_DEVIATION * (here - there));
+  return { joules: potential.joules, sigma };
+}
+
+function halveResolution(field: Grid2<'G'>): Grid2<'G'> {
+  const [ny, nx] = field.values.shape;
+  if (Math.min(nx, ny) < 4) return field;
+  const half = blockMean(field.values.data, nx, ny, 2);
+  return makeGrid(half.values, half.nx, half.ny, 'G', 2 * field.pixelMm);
 }
 
 /** The radial field the other way, to tell how much hangs on the choice. */
@@ -239,5 +174,7 @@ function fluxFlags(patch: LocalPatch, quantities: Quantities, method: RadialMeth
       `${missing} patch pixels (${((100 * missing) / patch.mask.length).toPrecision(2)} %) are missing and count as no field`,
     );
   if (!patch.mask.includes(PIXEL_GOOD)) flags.push('no pixel holds a value');
+  if (quantities.flux_imbalance?.value === null)
+    flags.push('flux imbalance cannot be had: no flux stands above the noise');
   return flags;
 }

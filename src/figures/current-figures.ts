@@ -3,14 +3,12 @@ import { inductance, lundquistNumber } from '../energy/circuit.js';
 import type { LinearFreeEnergy } from '../energy/region-energy.js';
 import type { Energy } from '../energy/spectral-energy.js';
 import { type AlphaBelief, beliefQuantile } from '../field/alpha.js';
-import { sumFlux } from '../field/flux.js';
+import type { FluxSums } from '../field/flux.js';
 import { potentialStrengthAbove } from '../field/potential.js';
 import type { Grid2 } from '../grid/grid.js';
 import { METRES_PER_MEGAMETRE, TESLA_PER_GAUSS } from '../units.js';
-import type { PatchNoise } from './analyse-region.js';
-import { type Quantity, type QuantityKey, quantity } from './quantity.js';
-
-type Quantities = Partial<Record<QuantityKey, Quantity>>;
+import type { PatchNoise } from './patch-noise.js';
+import { type Quantities, type QuantityKey, quantity } from './quantity.js';
 
 /** 16, 50 and 84 % of equally likely values, widened by an independent relative error. */
 function spread(
@@ -37,14 +35,15 @@ function spread(
  * median and 16/84 % of the belief on alpha. Free energy grows with |alpha|, so its quantiles are its
  * values at the quantiles of |alpha|.
  */
-export function currentQuantities(
-  belief: AlphaBelief,
-  linear: LinearFreeEnergy,
-  radial: Grid2<'G'>,
-  flux: Quantities,
-  noise: PatchNoise,
-  potential: Energy,
-): { readonly quantities: Quantities; readonly flags: string[] } {
+export function currentQuantities(known: {
+  readonly belief: AlphaBelief;
+  readonly linear: LinearFreeEnergy;
+  readonly sums: FluxSums;
+  readonly quantities: Quantities;
+  readonly noise: PatchNoise;
+  readonly potential: Energy;
+}): { readonly quantities: Quantities; readonly flags: string[] } {
+  const { belief, linear, sums, noise, potential } = known;
   const { basis, perMm } = belief;
   const sizes = perMm.map(Math.abs);
   const atQuantile = (p: number) => linear.at(beliefQuantile(sizes, p));
@@ -60,10 +59,9 @@ export function currentQuantities(
   );
   const downFree = middle.joules - (free.low ?? 0);
   const upFree = (free.high ?? 0) - middle.joules;
-  const sums = sumFlux(radial, 3 * noise.pixelDeviationG);
   const up = sums.positiveMx;
   const down = sums.negativeMx;
-  const fluxNoise = fluxRelativeSigma(flux);
+  const fluxNoise = fluxRelativeSigma(known.quantities);
   const total = potential.joules + middle.joules;
   const peakG = Math.max(sums.peakPositiveG, -sums.peakNegativeG);
   const quantities: Quantities = {
@@ -162,9 +160,8 @@ const CORONA = {
  */
 export function circuitQuantities(
   radial: Grid2<'G'>,
-  noise: PatchNoise,
+  sums: FluxSums,
 ): { readonly quantities: Quantities; readonly flags: string[] } {
-  const sums = sumFlux(radial, 3 * noise.pixelDeviationG);
   const [px, py] = sums.positiveCenter;
   const [qx, qy] = sums.negativeCenter;
   const lengthMm = radial.pixelMm * Math.hypot(px - qx, py - qy);

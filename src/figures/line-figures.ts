@@ -11,14 +11,12 @@ import { potentialHorizontalField, type Sides } from '../field/potential.js';
 import type { Spectrum2 } from '../grid/fft.js';
 import type { Grid2 } from '../grid/grid.js';
 import { WIDTH_PER_DEVIATION } from '../grid/smooth.js';
-import type { PatchNoise } from './analyse-region.js';
-import { type Quantity, type QuantityKey, quantity } from './quantity.js';
+import type { PatchNoise } from './patch-noise.js';
+import { type Quantities, quantity } from './quantity.js';
 
 /** Coarser pixels than this [Mm] cannot tell a gradient at an inversion line. */
 const COARSEST_PIXEL_MM = 4;
 const NEAR_LINE_THRESHOLD_G = 150;
-
-type Quantities = Partial<Record<QuantityKey, Quantity>>;
 
 /** Noise [G] of the field smoothed for its zero line: a Gaussian of deviation s averages 4 pi s^2. */
 function smoothedNoise(pixelMm: number, noise: PatchNoise): number {

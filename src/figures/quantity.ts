@@ -44,6 +44,7 @@ export const QUANTITY_FACTS = {
 } as const satisfies Record<string, { sign: -1 | 0 | 1; unit: QuantityUnit; label: string }>;
 
 export type QuantityKey = keyof typeof QUANTITY_FACTS;
+export type Quantities = Partial<Record<QuantityKey, Quantity>>;
 export const QUANTITY_KEYS = Object.keys(QUANTITY_FACTS) as readonly QuantityKey[];
 
 /**
