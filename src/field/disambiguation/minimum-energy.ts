@@ -28,7 +28,7 @@ export interface MinimumEnergyOptions {
   readonly lambda?: number;
   /** The same seed gives the same result. */
   readonly seed?: number;
-  /** How often to begin anew; the lowest functional wins. */
+  /** How often to begin anew at most; the lowest functional wins, two that agree end the search. */
   readonly starts?: number;
 }
 
@@ -50,7 +50,9 @@ export interface MinimumEnergyResult extends ResolvedField {
 const COOLING = { from: 10, to: 0.2, sweeps: 60 };
 const REHEATING = { from: 2, to: 0.2, sweeps: 5 };
 const FREEZING = { from: 0.05, to: 0.02, sweeps: 4 };
-const QUIET_ROUNDS = 3;
+const QUIET_ROUNDS = 2;
+/** Two runs whose functionals differ by less than this fraction have found the same state. */
+const SAME_STATE = 1e-4;
 const MOST_ROUNDS = 10;
 /** Turned clusters of up to this many pixels are noise, which another round would only shuffle. */
 const SMALL_CLUSTER = 12;
@@ -107,6 +109,7 @@ function minimise(lattice: Lattice, random: () => number, starts: number): void 
     annealPixels(lattice, COOLING, random);
     relax(lattice, random, true);
     const energy = totalEnergy(lattice);
+    if (best && Math.abs(energy - best.energy) < SAME_STATE * best.energy) break;
     if (!best || energy < best.energy) best = { energy, state: saveState(lattice) };
   }
   if (best) restoreState(lattice, best.state);
