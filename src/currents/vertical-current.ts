@@ -65,6 +65,12 @@ function curl(
   scale: number,
 ): Float64Array {
   const out = new Float64Array(nx * ny).fill(Number.NaN);
+  if (stencil === CENTRAL) {
+    for (let y = 1; y < ny - 1; y++)
+      for (let i = y * nx + 1; i < (y + 1) * nx - 1; i++)
+        out[i] = scale * (by[i + 1] - by[i - 1] - bx[i + nx] + bx[i - nx]);
+    return out;
+  }
   const steps = Int32Array.from(stencil, ([dx, dy]) => dx + nx * dy);
   const weightY = Float64Array.from(stencil, ([, , y]) => scale * y);
   const weightX = Float64Array.from(stencil, ([, , , x]) => scale * x);
@@ -156,16 +162,13 @@ export function quietCurrentNoise(
   return 1.4826 * sizes[sizes.length >> 1];
 }
 
-/** Draws of the noise of a vector map: fills three arrays with normal errors of the noise given [G]. */
-export function drawNoise(
-  noise: VectorNoise,
-  normal: () => number,
-  out: readonly [Float64Array, Float64Array, Float64Array],
+/** Fills `out` with errors [G]: standard normal numbers from `fill` times the noise of each pixel. */
+export function drawErrors(
+  noise: number | Float64Array,
+  fill: (out: Float64Array) => void,
+  out: Float64Array,
 ): void {
-  const parts = [noise.x, noise.y, noise.z];
-  for (let axis = 0; axis < 3; axis++) {
-    const part = parts[axis];
-    const values = out[axis];
-    for (let i = 0; i < values.length; i++) values[i] = noiseAt(part, i) * normal();
-  }
+  fill(out);
+  if (typeof noise === 'number') for (let i = 0; i < out.length; i++) out[i] *= noise;
+  else for (let i = 0; i < out.length; i++) out[i] *= noise[i];
 }
