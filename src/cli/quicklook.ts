@@ -9,6 +9,7 @@ import { quickLookCsv } from '../report/table.js';
 import { DONE, FAILED, PARTLY } from './exit-codes.js';
 import { faultLine } from './faults.js';
 import { makeOutputFolder, writeTogether } from './output.js';
+import { type PictureDrawer, startPictureDrawer } from './picture-drawer.js';
 import { type ReadingOptions, readingOptions } from './reading-options.js';
 
 /** Options of the command as commander gives them. */
@@ -72,7 +73,11 @@ interface Results {
   readonly files: readonly { readonly path: string; readonly content: string | Uint8Array }[];
 }
 
-async function work(file: string, options: QuickLookArguments): Promise<Results> {
+async function work(
+  file: string,
+  options: QuickLookArguments,
+  drawer: PictureDrawer | undefined,
+): Promise<Results> {
   const { document, map, analysis } = quickLook(file, {
     reading: readingOptions(options),
     analysis: analysisOptions(options),
@@ -83,9 +88,8 @@ async function work(file: string, options: QuickLookArguments): Promise<Results>
     { path: `${base}.json`, content: `${JSON.stringify(document, null, 2)}\n` },
     { path: `${base}.csv`, content: quickLookCsv(document) },
   ];
-  if (options.picture) {
-    const { renderRegionPicture } = await import('../render/region-picture.js');
-    const content = await renderRegionPicture({
+  if (drawer) {
+    const content = await drawer.draw({
       source: basename(file),
       observed: map.observed,
       toolVersion: version,
@@ -132,10 +136,11 @@ export async function runQuickLook(
   options: QuickLookArguments,
 ): Promise<number> {
   checkNames(files);
+  const drawer = options.picture ? startPictureDrawer() : undefined;
   let failures = 0;
   for (const file of files) {
     try {
-      const results = await work(file, options);
+      const results = await work(file, options, drawer);
       makeOutputFolder(options.out);
       await writeTogether(results.files);
       print(results, file, options.json === true);
@@ -144,6 +149,7 @@ export async function runQuickLook(
       process.stderr.write(`${faultLine(error, file, options.debug === true)}\n`);
     }
   }
+  await drawer?.close();
   if (failures === 0) return DONE;
   return failures === files.length ? FAILED : PARTLY;
 }

@@ -67,9 +67,15 @@ export function sumFlux(radial: Grid2<'G'>, leastG: number): FluxSums {
   };
 }
 
-/** Area [Mm^2] where the field reaches `thresholdG`. */
-export function areaAbove(radial: Grid2<'G'>, thresholdG: number): number {
-  let count = 0;
-  for (const b of radial.values.data) if (Math.abs(b) >= thresholdG) count++;
-  return count * radial.pixelMm * radial.pixelMm;
+/** Areas [Mm^2] where the field reaches each threshold [G]. */
+export function areasAbove(radial: Grid2<'G'>, thresholdsG: readonly number[]): number[] {
+  const counts = thresholdsG.map(() => 0);
+  const least = Math.min(...thresholdsG);
+  for (const b of radial.values.data) {
+    const size = Math.abs(b);
+    // Most pixels reach none of them.
+    if (!(size >= least)) continue;
+    for (let t = 0; t < counts.length; t++) if (size >= thresholdsG[t]) counts[t]++;
+  }
+  return counts.map((count) => count * radial.pixelMm * radial.pixelMm);
 }

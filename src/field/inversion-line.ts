@@ -50,38 +50,56 @@ export interface ZeroLine {
   readonly blurMm: number;
 }
 
-/** Box around the known pixels of a map. */
-function knownBox(values: Float64Array, nx: number, ny: number) {
+interface Box {
+  readonly west: number;
+  readonly south: number;
+  readonly nx: number;
+  readonly ny: number;
+}
+
+/** Box around the pixels of at least `least`, wider by `margin` where the map is; undefined without any. */
+function boxAbove(
+  values: Float64Array,
+  nx: number,
+  ny: number,
+  least: number,
+  margin: number,
+): Box | undefined {
   let [west, east, south, north] = [nx, -1, ny, -1];
   for (let y = 0; y < ny; y++) {
     for (let x = 0; x < nx; x++) {
-      if (Number.isNaN(values[x + nx * y])) continue;
+      if (!(values[x + nx * y] >= least)) continue;
       if (x < west) west = x;
       if (x > east) east = x;
       if (y < south) south = y;
       north = y;
     }
   }
-  return { west, south, width: east - west + 1, height: north - south + 1 };
+  if (east - west < 1 || north - south < 1) return undefined;
+  west = Math.max(0, west - margin);
+  south = Math.max(0, south - margin);
+  const right = Math.min(nx - 1, east + margin);
+  const top = Math.min(ny - 1, north + margin);
+  return { west, south, nx: right - west + 1, ny: top - south + 1 };
 }
 
-/** Closed rings of the zero level in patch pixels, also along the edges of what is known. */
-function zeroRings(smoothed: Float64Array, nx: number, ny: number): [number, number][][] {
-  const { west, south, width, height } = knownBox(smoothed, nx, ny);
-  if (width < 2 || height < 2) return [];
-  const filled: number[] = new Array(width * height);
-  for (let y = 0, i = 0; y < height; y++) {
-    for (let x = 0; x < width; x++, i++) {
-      const value = smoothed[west + x + nx * (south + y)];
-      filled[i] = Number.isNaN(value) ? 0 : value;
-    }
+function cutOut(values: Float64Array, nx: number, box: Box): Float64Array {
+  const out = new Float64Array(box.nx * box.ny);
+  for (let y = 0; y < box.ny; y++) {
+    const start = box.west + nx * (box.south + y);
+    out.set(values.subarray(start, start + box.nx), y * box.nx);
   }
+  return out;
+}
+
+/** Closed rings of the zero level in pixels, also along the edges of what is known. */
+function zeroRings(values: Float64Array, nx: number, ny: number): [number, number][][] {
+  const filled: number[] = new Array(values.length);
+  for (let i = 0; i < values.length; i++) filled[i] = Number.isNaN(values[i]) ? 0 : values[i];
   // A shade above zero, so that missing pixels lie on one side and not on the line.
-  const shapes = contours().size([width, height]).smooth(true).contour(filled, 1e-9);
+  const shapes = contours().size([nx, ny]).smooth(true).contour(filled, 1e-9);
   return shapes.coordinates.flatMap((polygon) =>
-    polygon.map((ring) =>
-      ring.map(([x, y]): [number, number] => [x + west - 0.5, y + south - 0.5]),
-    ),
+    polygon.map((ring) => ring.map(([x, y]): [number, number] => [x - 0.5, y - 0.5])),
   );
 }
 
@@ -97,19 +115,22 @@ export function traceZeroLine(
   const [ny, nx] = radial.values.shape;
   const { pixelMm } = radial;
   const blurPixels = Math.max(SMOOTHING_WIDTH_MM / pixelMm, 1.5) / WIDTH_PER_DEVIATION;
-  const smoothed = gaussianBlur(radial.values.data, nx, ny, blurPixels);
-  const gradient = gradientSize(smoothed, nx, ny, pixelMm);
+  const blurMm = blurPixels * pixelMm;
   const hx = horizontal.x.values.data;
   const hy = horizontal.y.values.data;
   const strength = new Float64Array(nx * ny);
-  for (let i = 0; i < strength.length; i++) {
-    strength[i] = Math.sqrt(hx[i] * hx[i] + hy[i] * hy[i]);
-    // Outside the region the zero line of noise is endless: take it for missing.
-    if (strength[i] < TRACED_SHARE * leastHorizontalG) smoothed[i] = Number.NaN;
-  }
-  const at = (map: Float64Array, x: number, y: number) => bilinear(map, nx, ny, x, y);
+  for (let i = 0; i < strength.length; i++) strength[i] = Math.sqrt(hx[i] * hx[i] + hy[i] * hy[i]);
+  const least = TRACED_SHARE * leastHorizontalG;
+  const box = boxAbove(strength, nx, ny, least, Math.ceil(4 * blurPixels));
+  if (!box) return { chains: [], blurMm };
+  const strengthInside = cutOut(strength, nx, box);
+  const smoothed = gaussianBlur(cutOut(radial.values.data, nx, box), box.nx, box.ny, blurPixels);
+  const gradient = gradientSize(smoothed, box.nx, box.ny, pixelMm);
+  // Outside the region the zero line of noise is endless: take it for missing.
+  for (let i = 0; i < smoothed.length; i++) if (strengthInside[i] < least) smoothed[i] = Number.NaN;
+  const at = (map: Float64Array, x: number, y: number) => bilinear(map, box.nx, box.ny, x, y);
   const chains: Segment[][] = [];
-  for (const ring of zeroRings(smoothed, nx, ny)) {
+  for (const ring of zeroRings(smoothed, box.nx, box.ny)) {
     let chain: Segment[] = [];
     for (let i = 0; i + 1 < ring.length; i++) {
       const [fromX, fromY] = ring[i];
@@ -122,18 +143,18 @@ export function traceZeroLine(
         continue;
       }
       chain.push({
-        fromX,
-        fromY,
-        toX,
-        toY,
+        fromX: fromX + box.west,
+        fromY: fromY + box.south,
+        toX: toX + box.west,
+        toY: toY + box.south,
         lengthMm: pixelMm * Math.hypot(toX - fromX, toY - fromY),
-        horizontalG: at(strength, ...middle),
+        horizontalG: at(strengthInside, ...middle),
         gradient: at(gradient, ...middle),
       });
     }
     if (chain.length > 0) chains.push(chain);
   }
-  return { chains, blurMm: blurPixels * pixelMm };
+  return { chains, blurMm };
 }
 
 function isStrong(segment: Segment): boolean {

@@ -29,14 +29,34 @@ function dilate(bitmap: Uint8Array, nx: number, ny: number): Uint8Array {
 /**
  * Unsigned flux [Mx] near strong-gradient inversion lines (Schrijver 2007, ApJ 655, L117): where
  * regions above 150 G of both signs, each grown by one 1.44 Mm pixel, overlap; that map convolved with a
- * Gaussian of 15 Mm full width and unit area weights |Bz|. Missing pixels carry none. `thresholdG`
- * moves the 150 G, for intervals.
+ * Gaussian of 15 Mm full width and unit area weights |Bz|. Missing pixels carry none. One flux for each
+ * of `shiftsG`, which move the 150 G, for intervals.
  */
-export function nearLineFlux(radial: Grid2<'G'>, thresholdG = STRONG_FIELD_G): number {
+export function nearLineFlux(radial: Grid2<'G'>, shiftsG: readonly number[] = [0]): number[] {
   const [height, width] = radial.values.shape;
   const factor = Math.max(1, Math.round(DEFINING_PIXEL_MM / radial.pixelMm));
-  const { values, nx, ny } = blockMean(radial.values.data, width, height, factor);
+  const blocks = blockMean(radial.values.data, width, height, factor);
   const pixelMm = radial.pixelMm * factor;
+  const scale = pixelMm * pixelMm * MAXWELL_PER_GAUSS_SQUARE_MEGAMETRE;
+  const deviation = WEIGHT_WIDTH_MM / WIDTH_PER_DEVIATION / pixelMm;
+  return shiftsG.map((shift) => {
+    const touch = touching(blocks, STRONG_FIELD_G + shift);
+    if (!touch) return 0;
+    const weight = gaussianSpread(touch, blocks.nx, deviation);
+    let sum = 0;
+    for (let i = 0; i < weight.length; i++) {
+      const b = blocks.values[i];
+      if (!Number.isNaN(b)) sum += weight[i] * Math.abs(b);
+    }
+    return sum * scale;
+  });
+}
+
+/** 1 where both signs above the threshold touch, else 0; undefined where they never do. */
+function touching(
+  { values, nx, ny }: { readonly values: Float64Array; readonly nx: number; readonly ny: number },
+  thresholdG: number,
+): Float64Array | undefined {
   const above = new Uint8Array(values.length);
   const below = new Uint8Array(values.length);
   for (let i = 0; i < values.length; i++) {
@@ -47,10 +67,5 @@ export function nearLineFlux(radial: Grid2<'G'>, thresholdG = STRONG_FIELD_G): n
   const negative = dilate(below, nx, ny);
   const touch = new Float64Array(values.length);
   for (let i = 0; i < values.length; i++) touch[i] = positive[i] * negative[i];
-  if (!touch.includes(1)) return 0;
-  const weight = gaussianSpread(touch, nx, WEIGHT_WIDTH_MM / WIDTH_PER_DEVIATION / pixelMm);
-  let sum = 0;
-  for (let i = 0; i < values.length; i++)
-    if (!Number.isNaN(values[i])) sum += weight[i] * Math.abs(values[i]);
-  return sum * pixelMm * pixelMm * MAXWELL_PER_GAUSS_SQUARE_MEGAMETRE;
+  return touch.includes(1) ? touch : undefined;
 }

@@ -109,7 +109,7 @@ function energyQuantity(key: 'potential_energy' | 'free_energy_ceiling', energy:
 
 /**
  * Potential energy whose error includes what the other way to the radial field would change, which half
- * the resolution tells well enough.
+ * the resolution and periodic sides tell well enough.
  */
 function potentialWithSpread(
   radial: Grid2<'G'>,
@@ -121,7 +121,7 @@ function potentialWithSpread(
   const potential = potentialEnergy(radial, noise, sides, spectrum);
   if (other === radial) return potential;
   const [here, there] = [radial, other].map(
-    (field) => potentialEnergy(halveResolution(field), noise, sides).joules,
+    (field) => potentialEnergy(halveResolution(field), noise, 'periodic').joules,
   );
   const sigma = Math.hypot(potential.sigma, UNIFORM_DEVIATION * (here - there));
   return { joules: potential.joules, sigma };

@@ -1,4 +1,4 @@
-import { areaAbove, type FluxSums, STRONG_AREA_FIELD_G, sumFlux } from '../field/flux.js';
+import { areasAbove, type FluxSums, STRONG_AREA_FIELD_G, sumFlux } from '../field/flux.js';
 import type { Grid2 } from '../grid/grid.js';
 import { type PatchNoise, signalLeast, UNIFORM_DEVIATION } from './patch-noise.js';
 import { type Quantities, quantity, withSigma } from './quantity.js';
@@ -35,8 +35,11 @@ export function fluxQuantities(
   const unsignedSigma = sigma(pixels, unsigned, others.positiveMx + others.negativeMx);
   const net = up - down;
   const netSigma = sigma(pixels, net, others.positiveMx - others.negativeMx);
-  const area = (shift: number) => areaAbove(radial, STRONG_AREA_FIELD_G + shift);
   const one = noise.pixelDeviationG;
+  const [area, less, more] = areasAbove(
+    radial,
+    [0, one, -one].map((shift) => STRONG_AREA_FIELD_G + shift),
+  );
   const peak = (key: 'peak_positive_field' | 'peak_negative_field') => {
     const field = key === 'peak_positive_field' ? 'peakPositiveG' : 'peakNegativeG';
     return withSigma(
@@ -64,6 +67,6 @@ export function fluxQuantities(
     flux_imbalance: withSigma('flux_imbalance', net / unsigned, netSigma / unsigned, 'measured'),
     peak_positive_field: peak('peak_positive_field'),
     peak_negative_field: peak('peak_negative_field'),
-    strong_field_area: quantity('strong_field_area', area(0), area(one), area(-one), 'measured'),
+    strong_field_area: quantity('strong_field_area', area, less, more, 'measured'),
   };
 }

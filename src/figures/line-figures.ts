@@ -16,7 +16,6 @@ import { type Quantities, quantity } from './quantity.js';
 
 /** Coarser pixels than this [Mm] cannot tell a gradient at an inversion line. */
 const COARSEST_PIXEL_MM = 4;
-const NEAR_LINE_THRESHOLD_G = 150;
 
 /** Noise [G] of the field smoothed for its zero line: a Gaussian of deviation s averages 4 pi s^2. */
 function smoothedNoise(pixelMm: number, noise: PatchNoise): number {
@@ -56,8 +55,8 @@ export function lineQuantities(
   const measured = measureInversionLine(zero, least);
   const fewer = measureInversionLine(zero, least + smoothedG, smoothedG, gradientNoise);
   const more = measureInversionLine(zero, least - smoothedG, -smoothedG, -gradientNoise);
-  const near = (shift: number) => nearLineFlux(radial, NEAR_LINE_THRESHOLD_G + shift);
   const one = noise.pixelDeviationG;
+  const [near, nearFewer, nearMore] = nearLineFlux(radial, [0, one, -one]);
   return {
     lines: inversionLines(zero, least),
     quantities: {
@@ -82,7 +81,7 @@ export function lineQuantities(
         more.gradientWeightedG,
         'extrapolated',
       ),
-      near_line_flux: quantity('near_line_flux', near(0), near(one), near(-one), 'measured'),
+      near_line_flux: quantity('near_line_flux', near, nearFewer, nearMore, 'measured'),
     },
     flags: [],
   };

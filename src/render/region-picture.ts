@@ -3,7 +3,9 @@ import type { RegionFigures } from '../figures/region.js';
 import type { LocalPatch } from '../geometry/patch.js';
 import type { Grid2 } from '../grid/grid.js';
 import { composePicture } from './compose.js';
+import { newDrawing } from './drawing.js';
 import { encodePng, layOver, rasteriseDrawing } from './encode.js';
+import { textWidth } from './font.js';
 
 /** What the picture of one region shows. */
 export interface RegionPicture {
@@ -17,6 +19,12 @@ export interface RegionPicture {
   readonly radialField: Grid2<'G'>;
   readonly currentDensity: Grid2<'mA/m^2'> | undefined;
   readonly inversionLines: readonly InversionLine[];
+}
+
+/** Loads fonts and the rasteriser ahead of the first picture, by drawing next to nothing. */
+export async function prepareDrawing(): Promise<void> {
+  for (const weight of ['regular', 'bold'] as const) textWidth('M', 12, weight);
+  await rasteriseDrawing(newDrawing(), 8, 8);
 }
 
 /**

@@ -126,6 +126,21 @@ describe('spotjoule quicklook', () => {
     expect(spotjoule(folder, 'quicklook', SMALL, '--json', '--no-picture').stdout).toBe(once);
   });
 
+  it('gives the same figures to 1e-9 where the compiled transform is missing', () => {
+    const compiled = JSON.parse(
+      spotjoule(folder, 'quicklook', SMALL, '--json', '--no-picture').stdout,
+    );
+    process.env.SPOTJOULE_KERNEL = 'portable';
+    const portable = JSON.parse(
+      spotjoule(folder, 'quicklook', SMALL, '--json', '--no-picture').stdout,
+    );
+    delete process.env.SPOTJOULE_KERNEL;
+    for (const key of QUANTITY_KEYS) {
+      const [a, b] = [compiled, portable].map(({ regions }) => regions[0].quantities[key].value);
+      expect(Math.abs(a - b), key).toBeLessThanOrEqual(1e-9 * Math.abs(a));
+    }
+  });
+
   it('gives the same figures from every encoding of a map', () => {
     const reference = JSON.parse(
       spotjoule(folder, 'quicklook', SMALL, '--json', '--no-picture').stdout,
