@@ -73,6 +73,10 @@ interface Results {
   readonly files: readonly { readonly path: string; readonly content: string | Uint8Array }[];
 }
 
+/** The viewing directions are not drawn: spare the second thread a copy of three maps. */
+const NOTHING = new Float64Array(0);
+const NOT_DRAWN = { x: NOTHING, y: NOTHING, z: NOTHING };
+
 async function work(
   file: string,
   options: QuickLookArguments,
@@ -94,7 +98,7 @@ async function work(
       observed: map.observed,
       toolVersion: version,
       region: analysis.figures,
-      patch: analysis.patch,
+      patch: { ...analysis.patch, toObserver: NOT_DRAWN },
       radialField: analysis.radialField,
       currentDensity: analysis.currentDensity,
       inversionLines: analysis.inversionLines,
