@@ -4,24 +4,14 @@ import { currentBudget, sumCurrents } from '../../src/currents/current-budget.js
 import { currentHelicity } from '../../src/currents/current-helicity.js';
 import { measureCurrents } from '../../src/currents/measured-currents.js';
 import { contourCurrent } from '../../src/currents/vertical-current.js';
-import { makeVectorField, type VectorField } from '../../src/field/vector-field.js';
+import { makeVectorField } from '../../src/field/vector-field.js';
 import type { Interval } from '../../src/grid/interval.js';
 import { linearForceFree } from '../support/linear-force-free.js';
 import { CASE_ONE, CASE_TWO, lowLouPlane, solveLowLou } from '../support/low-lou.js';
-import { normalNoise } from '../support/random.js';
+import { NOISE, withNoise } from '../support/noisy-field.js';
 import { ropePlane } from '../support/twisted-rope.js';
 
 const MU0 = 4e-7 * Math.PI;
-const NOISE = { x: 100, y: 100, z: 10 };
-
-function withNoise(field: VectorField, seed: number): VectorField {
-  const normal = normalNoise(seed);
-  const [ny, nx] = field.z.values.shape;
-  const part = (axis: 'x' | 'y' | 'z') =>
-    field[axis].values.data.map((value) => value + NOISE[axis] * normal());
-  return makeVectorField(part('x'), part('y'), part('z'), nx, ny, field.z.pixelMm);
-}
-
 const holdsZero = ({ low, high }: Interval) => (low <= 0 && high >= 0 ? 1 : 0);
 
 describe('alpha of linear force-free data', () => {
