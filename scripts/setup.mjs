@@ -32,7 +32,7 @@ if (!installed()) {
 const dist = join(root, 'dist');
 if (existsSync(dist)) {
   for (const entry of readdirSync(dist, { recursive: true, withFileTypes: true })) {
-    const kernel = entry.name.startsWith('fft.wasm');
+    const kernel = /\.wasm(\.sources)?$/.test(entry.name);
     if (!entry.isDirectory() && !kernel) rmSync(join(entry.parentPath ?? entry.path, entry.name));
   }
 }

@@ -19,7 +19,13 @@ const MAY_IMPORT: Readonly<Record<string, readonly string[]>> = {
 };
 const PURE = ['grid', 'field', 'currents', 'energy', 'figures'];
 /** Finds the compiled transform beside the code, starts its second thread, loads the fallback when wanted: where grid touches Node. */
-const READS_DISK = ['grid/kernel-loader.ts', 'grid/fft-threads.ts', 'grid/portable-fft.ts'];
+const READS_DISK = [
+  'grid/kernel-loader.ts',
+  'grid/fft-threads.ts',
+  'grid/portable-fft.ts',
+  'grid/volume-module.ts',
+  'grid/volume-threads.ts',
+];
 
 const files = readdirSync(SRC, { recursive: true, encoding: 'utf8' }).filter(
   (file) => file.endsWith('.ts') && !file.startsWith('grid/kernel/'),

@@ -31,6 +31,7 @@ it('packs to an archive that installs and runs elsewhere, as command and as libr
     'dist/index.d.ts',
     'dist/report/quicklook.schema.json',
     'dist/grid/fft.wasm',
+    'dist/grid/volume.wasm',
   ])
     expect(paths).toContain(needed);
   expect(
