@@ -40,7 +40,10 @@ export interface RegionAnalysis {
   readonly inversionLines: readonly InversionLine[];
 }
 
-function heliographicName({ stonyhurstLongitudeDeg, stonyhurstLatitudeDeg }: LocalPatch['center']) {
+export function heliographicName({
+  stonyhurstLongitudeDeg,
+  stonyhurstLatitudeDeg,
+}: LocalPatch['center']) {
   const two = (deg: number) => String(Math.abs(Math.round(deg))).padStart(2, '0');
   const ns = stonyhurstLatitudeDeg < 0 ? 'S' : 'N';
   const ew = stonyhurstLongitudeDeg < 0 ? 'E' : 'W';

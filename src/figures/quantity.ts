@@ -1,7 +1,18 @@
 /** What a figure rests on; one sentence each in the README. */
 export type Basis = 'measured' | 'extrapolated' | 'prior' | 'assumed' | 'sequence';
 
-export type QuantityUnit = 'Mx' | 'G' | 'Mm' | 'Mm^2' | 'J' | 'A' | 'mA/m^2' | '1/Mm' | 'H' | '1';
+export type QuantityUnit =
+  | 'Mx'
+  | 'G'
+  | 'Mm'
+  | 'Mm^2'
+  | 'J'
+  | 'A'
+  | 'mA/m^2'
+  | '1/Mm'
+  | 'H'
+  | 'G^2/m'
+  | '1';
 
 /** A figure with its 1-sigma (16/84 %) interval; all null where it cannot be had (a flag says why). */
 export interface Quantity {
@@ -14,7 +25,7 @@ export interface Quantity {
 
 /**
  * The figures of the quick look in the order they are shown, with unit, plain name and the sign that the
- * law gives them (0: either).
+ * law gives them (0: either); `vector` marks those that need all three components.
  */
 export const QUANTITY_FACTS = {
   positive_flux: { sign: 1, unit: 'Mx', label: 'positive flux' },
@@ -41,15 +52,38 @@ export const QUANTITY_FACTS = {
   near_line_flux: { sign: 1, unit: 'Mx', label: 'near-line flux' },
   inductance: { sign: 1, unit: 'H', label: 'inductance' },
   lundquist_number: { sign: 1, unit: '1', label: 'Lundquist number' },
-} as const satisfies Record<string, { sign: -1 | 0 | 1; unit: QuantityUnit; label: string }>;
+  unsigned_current: { sign: 1, unit: 'A', label: 'unsigned current', vector: true },
+  neutralization_positive: { sign: 1, unit: '1', label: 'neutralization, positive', vector: true },
+  neutralization_negative: { sign: 1, unit: '1', label: 'neutralization, negative', vector: true },
+  current_helicity_mean: { sign: 0, unit: 'G^2/m', label: 'mean current helicity', vector: true },
+  shear_line_length: { sign: 1, unit: 'Mm', label: 'sheared line', vector: true },
+  virial_energy: { sign: 0, unit: 'J', label: 'virial energy', vector: true },
+  virial_origin_change: { sign: 1, unit: '1', label: 'virial change with origin', vector: true },
+  net_force_x: { sign: 0, unit: '1', label: 'net force, west', vector: true },
+  net_force_y: { sign: 0, unit: '1', label: 'net force, north', vector: true },
+  net_force_z: { sign: 0, unit: '1', label: 'net force, up', vector: true },
+  disambiguation_flux_fraction_changed: {
+    sign: 1,
+    unit: '1',
+    label: 'changed by disambiguation',
+    vector: true,
+  },
+} as const satisfies Record<
+  string,
+  { sign: -1 | 0 | 1; unit: QuantityUnit; label: string; vector?: true }
+>;
 
 export type QuantityKey = keyof typeof QUANTITY_FACTS;
 export type Quantities = Partial<Record<QuantityKey, Quantity>>;
 export const QUANTITY_KEYS = Object.keys(QUANTITY_FACTS) as readonly QuantityKey[];
 
+/** Those that a line-of-sight map gives; the others need all three components. */
+export const LINE_OF_SIGHT_KEYS = QUANTITY_KEYS.filter((key) => !('vector' in QUANTITY_FACTS[key]));
+
 /**
  * A quantity of its key's unit. Noise may carry an estimate or its interval across zero where the law
- * allows one sign only: both end at zero then. Null throughout where a number is not finite.
+ * allows one sign only: both end at zero then, but for measured ones, whose mean over many maps would
+ * suffer. Null throughout where a number is not finite.
  */
 export function quantity(
   key: QuantityKey,
@@ -61,7 +95,7 @@ export function quantity(
   const { unit, sign } = QUANTITY_FACTS[key];
   if (![value, low, high].every(Number.isFinite))
     return { value: null, low: null, high: null, unit, basis };
-  const lawful = (number: number) => (sign * number < 0 ? 0 : number);
+  const lawful = (number: number) => (basis !== 'measured' && sign * number < 0 ? 0 : number);
   return {
     value: lawful(value),
     low: lawful(Math.min(low, value)),

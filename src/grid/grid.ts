@@ -1,7 +1,7 @@
 import ndarray, { type NdArray } from 'ndarray';
 
 /** Units a grid may carry; a real field, so it survives a worker or a file. */
-export type GridUnit = 'G' | 'mA/m^2' | '1';
+export type GridUnit = 'G' | 'mA/m^2' | '1/Mm' | '1';
 
 /**
  * A square-pixelled map. `values` has shape [ny, nx], row-major (`data[x + nx * y]`), row 0 at the

@@ -11,7 +11,7 @@ import { join } from 'node:path';
 import { Ajv2020 } from 'ajv/dist/2020.js';
 import sharp from 'sharp';
 import { describe, expect, it } from 'vitest';
-import { QUANTITY_KEYS } from '../../src/figures/quantity.js';
+import { LINE_OF_SIGHT_KEYS } from '../../src/figures/quantity.js';
 import { MARROW_HILL, ROOT, scratchFolder, spotjoule, startSpotjoule } from '../support/command.js';
 
 const folder = scratchFolder();
@@ -64,7 +64,9 @@ describe('spotjoule quicklook', () => {
     validate(document);
     expect(validate.errors ?? []).toEqual([]);
     expect(document.regions[0].id).toBe('MH-1');
-    expect(Object.keys(document.regions[0].quantities).sort()).toEqual([...QUANTITY_KEYS].sort());
+    expect(Object.keys(document.regions[0].quantities).sort()).toEqual(
+      [...LINE_OF_SIGHT_KEYS].sort(),
+    );
     expect(document.regions[0].center.stonyhurst_latitude).toBeCloseTo(-18, 0);
     expect(document.regions[0].center.stonyhurst_longitude).toBeCloseTo(12, 0);
   });
@@ -135,7 +137,7 @@ describe('spotjoule quicklook', () => {
       spotjoule(folder, 'quicklook', SMALL, '--json', '--no-picture').stdout,
     );
     delete process.env.SPOTJOULE_KERNEL;
-    for (const key of QUANTITY_KEYS) {
+    for (const key of LINE_OF_SIGHT_KEYS) {
       const [a, b] = [compiled, portable].map(({ regions }) => regions[0].quantities[key].value);
       expect(Math.abs(a - b), key).toBeLessThanOrEqual(1e-9 * Math.abs(a));
     }
