@@ -1,32 +1,26 @@
 import {
   type Basis,
   QUANTITY_FACTS,
+  QUANTITY_KEYS,
   type Quantity,
   type QuantityKey,
 } from '../figures/quantity.js';
 import type { RegionFigures } from '../figures/region.js';
 import { quantityText } from '../render/number-format.js';
 
-/** What the summary shows; everything else is in the files, so that it fits one screen. */
-const SHOWN: readonly QuantityKey[] = [
-  'unsigned_flux',
-  'net_flux',
-  'peak_positive_field',
-  'peak_negative_field',
-  'potential_energy',
-  'free_energy',
-  'free_energy_ceiling',
-  'total_energy',
-  'upward_current',
-  'downward_current',
-  'peak_current_density',
-  'force_free_alpha',
-  'strong_gradient_line_length',
-  'gradient_weighted_line_length',
-  'near_line_flux',
-  'inductance',
-  'lundquist_number',
-];
+/** What the summary leaves to the files, so that it fits one screen. */
+const LEFT_OUT: ReadonlySet<QuantityKey> = new Set([
+  'positive_flux',
+  'negative_flux',
+  'flux_imbalance',
+  'strong_field_area',
+  'net_current_positive',
+  'net_current_negative',
+  'inversion_line_length',
+  'virial_origin_change',
+  'net_force_x',
+  'net_force_y',
+]);
 
 const WIDTH = 96;
 
@@ -116,7 +110,7 @@ export function regionSummary(
   colour: boolean,
 ): string {
   const ink = paint(colour);
-  const rows = SHOWN.flatMap((key) => {
+  const rows = QUANTITY_KEYS.filter((key) => !LEFT_OUT.has(key)).flatMap((key) => {
     const quantity = figures.quantities[key];
     return quantity ? [row(key, quantity)] : [];
   });
