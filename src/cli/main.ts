@@ -54,6 +54,19 @@ function quicklookCommand(): Command {
     .option('--out <dir>', 'folder for the results', 'spotjoule-out')
     .option('--json', 'print one JSON document a file instead of the summary')
     .option('--maps', 'also write the maps of the patch as FITS')
+    .option('--volume', 'also write the field above the patch as FITS cubes')
+    .option('--levels <n>', 'levels of the volume', numberArgument('a number of levels', 1, 1024))
+    .option(
+      '--top <Mm>',
+      'height of its highest level [Mm]',
+      numberArgument('a height', 0.01, 3000),
+    )
+    .option(
+      '--every <n>',
+      'take every n-th pixel into the volume',
+      numberArgument('a number of pixels', 1, 64),
+    )
+    .option('--lines <n>', 'draw so many field lines', numberArgument('a number of lines', 1, 2000))
     .option('--no-picture', 'do not draw the picture')
     .addHelpText('after', EXIT_CODES)
     .action(async (files: string[], options: QuickLookArguments) => {

@@ -1,6 +1,7 @@
 import { basename, join } from 'node:path';
 import { UsageError } from '../errors.js';
 import type { MapAnalysis, MapAnalysisOptions } from '../figures/analyse-map.js';
+import type { SolarMap } from '../geometry/solar-map.js';
 import { numberText } from '../render/number-format.js';
 import type { QuickLookDocument } from '../report/document.js';
 import { quickLook } from '../report/quick-look.js';
@@ -26,6 +27,11 @@ export interface QuickLookArguments extends ReadingOptions {
   readonly out: string;
   readonly json?: boolean;
   readonly maps?: boolean;
+  readonly volume?: boolean;
+  readonly levels?: number;
+  readonly top?: number;
+  readonly every?: number;
+  readonly lines?: number;
   readonly picture: boolean;
   readonly debug?: boolean;
 }
@@ -102,6 +108,7 @@ async function work(
       radialField: analysis.radialField,
       currentDensity: analysis.currentDensity,
       inversionLines: analysis.inversionLines,
+      ...(options.lines !== undefined && { fieldLines: await fieldLines(analysis, options) }),
     });
     files.push({ path: `${base}.png`, content });
   }
@@ -109,7 +116,54 @@ async function work(
     const { regionMaps } = await import('../report/maps.js');
     files.push({ path: `${base}-maps.fits`, content: regionMaps(analysis, map, version) });
   }
+  if (options.volume) {
+    const content = await volumeFile(analysis, map, version, options);
+    files.push({ path: `${base}-volume.fits`, content });
+  }
   return { document, analysis, files };
+}
+
+async function fieldLines(analysis: MapAnalysis, options: QuickLookArguments) {
+  const { regionFieldLines } = await import('../figures/region-volume.js');
+  return regionFieldLines(analysis, options.lines ?? 0, options.alpha ?? 0);
+}
+
+async function volumeFile(
+  analysis: MapAnalysis,
+  map: SolarMap,
+  version: string,
+  options: QuickLookArguments,
+): Promise<Uint8Array> {
+  const { regionVolume } = await import('../figures/region-volume.js');
+  const { volumeCube } = await import('../report/volume-cube.js');
+  const { levels, top, every, alpha = 0 } = options;
+  const volume = regionVolume(analysis, {
+    ...(levels !== undefined && { levels }),
+    ...(top !== undefined && { topMm: top }),
+    ...(every !== undefined && { every }),
+    alphaPerMm: alpha,
+  });
+  return volumeCube(volume, alpha, analysis, map, version);
+}
+
+/** Options that only mean something beside others. */
+function checkVolumeOptions({
+  volume,
+  levels,
+  top,
+  every,
+  lines,
+  picture,
+}: QuickLookArguments): void {
+  for (const [name, value] of Object.entries({ levels, top, every })) {
+    if (value !== undefined && !volume) throw new UsageError(`--${name} is for --volume`);
+    if (name !== 'top' && value !== undefined && !Number.isInteger(value))
+      throw new UsageError(`--${name} ${value} is not a whole number`);
+  }
+  if (lines === undefined) return;
+  if (!Number.isInteger(lines)) throw new UsageError(`--lines ${lines} is not a whole number`);
+  if (!picture)
+    throw new UsageError('--lines are drawn on the picture, which --no-picture leaves out');
 }
 
 function useColour(): boolean {
@@ -140,6 +194,7 @@ export async function runQuickLook(
   options: QuickLookArguments,
 ): Promise<number> {
   checkNames(files);
+  checkVolumeOptions(options);
   const drawer = options.picture ? startPictureDrawer() : undefined;
   let failures = 0;
   for (const file of files) {

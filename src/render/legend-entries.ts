@@ -9,7 +9,11 @@ import type { RegionPicture } from './region-picture.js';
 export function legendEntries(picture: RegionPicture, content: MapContent): LegendColumns {
   const step = plainNumber(gridStepDeg(picture.patch, content.frame));
   return [
-    [...inversionEntries(content), ...currentEntries(picture, content)],
+    [
+      ...inversionEntries(content),
+      ...currentEntries(picture, content),
+      ...fieldLineEntries(picture, content),
+    ],
     [
       ...(content.poles.length > 0 ? [entry('poles', 'Strongest field, both signs')] : []),
       ...(content.hasMissing ? [entry('hatch', 'No data, or beyond the limb')] : []),
@@ -40,6 +44,24 @@ function currentEntries(picture: RegionPicture, content: MapContent): readonly L
     { sample: 'up', text: `Current up ${list('+')} ${unit}${note}`, supposed },
     { sample: 'down', text: `Current down ${list('−')} ${unit}${note}`, supposed },
   ];
+}
+
+/** What the lines show and how many of them: with an alpha of the user's, as an assumption. */
+function fieldLineEntries(picture: RegionPicture, content: MapContent): readonly LegendEntry[] {
+  const { closed, open } = content.fieldLines;
+  const all = closed.length + open.length;
+  const supposed = picture.region.quantities.force_free_alpha?.basis === 'assumed';
+  const note = supposed ? ', assumed alpha' : '';
+  const entries: LegendEntry[] = [];
+  if (closed.length > 0) {
+    const text = `Field line with both feet in the patch (${closed.length} of ${all})${note}`;
+    entries.push({ sample: 'closed', text, supposed });
+  }
+  if (open.length > 0) {
+    const text = `Field line that leaves it (${open.length} of ${all})${note}`;
+    entries.push({ sample: 'leaving', text, supposed });
+  }
+  return entries;
 }
 
 function entry(sample: LegendEntry['sample'], text: string): LegendEntry {

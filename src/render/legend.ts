@@ -1,11 +1,22 @@
 import type { Canvas } from './canvas.js';
 import { drawLines, drawText, type Rect } from './drawing.js';
+import { drawClosedLine, drawOpenLine } from './field-line-layer.js';
 import { drawCurrentLine, drawPlainLine, drawPoleSign, drawStrongLine } from './line-styles.js';
 import { paintHatch } from './map-layer.js';
 import { FRAME_INK, SMALL, SMALL_PRIOR } from './style.js';
 import { wrapText } from './text-fit.js';
 
-export type LegendSample = 'line' | 'strong' | 'up' | 'down' | 'poles' | 'hatch' | 'grid' | 'none';
+export type LegendSample =
+  | 'line'
+  | 'strong'
+  | 'up'
+  | 'down'
+  | 'poles'
+  | 'hatch'
+  | 'grid'
+  | 'none'
+  | 'closed'
+  | 'leaving';
 
 export interface LegendEntry {
   readonly sample: LegendSample;
@@ -86,6 +97,8 @@ function drawSample({ drawing, paints }: Canvas, sample: LegendSample, x: number
   if (sample === 'strong') drawStrongLine(drawing, wave);
   if (sample === 'up') drawCurrentLine(drawing, flat, 1, true);
   if (sample === 'down') drawCurrentLine(drawing, flat, -1, true);
+  if (sample === 'closed') drawClosedLine(drawing, wave);
+  if (sample === 'leaving') drawOpenLine(drawing, wave);
   if (sample === 'grid') drawLines(drawing, flat, FRAME_INK, 0.8, { 'stroke-opacity': 0.6 });
   if (sample === 'poles') {
     drawPoleSign(drawing, x + 8, y, 1);

@@ -7,6 +7,12 @@ import {
   currentGrid,
 } from './current-contours.js';
 import { drawClipped, drawShape } from './drawing.js';
+import {
+  drawClosedLine,
+  drawOpenLine,
+  type FieldLinePaths,
+  fieldLinePaths,
+} from './field-line-layer.js';
 import { type InversionPaths, inversionPaths } from './inversion-layer.js';
 import { drawCurrentLine, drawPlainLine, drawPoleSign, drawStrongLine } from './line-styles.js';
 import type { MapFrame } from './map-frame.js';
@@ -24,6 +30,7 @@ export interface MapContent {
   readonly hasMissing: boolean;
   readonly poles: readonly Pole[];
   readonly inversion: InversionPaths;
+  readonly fieldLines: FieldLinePaths;
   /** Undefined where there is no current map. */
   readonly current: CurrentGrid | undefined;
   readonly contours: readonly ContourSet[];
@@ -41,6 +48,7 @@ export function mapContent(picture: RegionPicture, frame: MapFrame): MapContent 
     hasMissing: samples.includes(Number.NaN),
     poles: strongestPoles(samples, frame, limit),
     inversion: inversionPaths(picture.inversionLines, frame),
+    fieldLines: fieldLinePaths(picture.fieldLines ?? [], picture.patch.pixelMm, frame),
     current,
     contours: current ? currentContours(current, frame) : [],
   };
@@ -57,6 +65,8 @@ export function drawMap(canvas: Canvas, picture: RegionPicture, content: MapCont
     for (const { level, lines } of content.contours) {
       drawCurrentLine(drawing, lines, level, Math.abs(level) === strongest);
     }
+    drawOpenLine(drawing, content.fieldLines.open);
+    drawClosedLine(drawing, content.fieldLines.closed);
     drawPlainLine(drawing, content.inversion.plain);
     drawStrongLine(drawing, content.inversion.strong);
     for (const { px, py, sign } of content.poles) drawPoleSign(drawing, px, py, sign);

@@ -1,3 +1,4 @@
+import type { FieldLine } from '../field/field-lines.js';
 import type { InversionLine } from '../field/inversion-line.js';
 import type { RegionFigures } from '../figures/region.js';
 import type { LocalPatch } from '../geometry/patch.js';
@@ -19,6 +20,8 @@ export interface RegionPicture {
   readonly radialField: Grid2<'G'>;
   readonly currentDensity: Grid2<'mA/m^2'> | undefined;
   readonly inversionLines: readonly InversionLine[];
+  /** Field lines to draw, in Mm from the first pixel of the patch. */
+  readonly fieldLines?: readonly FieldLine[];
 }
 
 /** Loads fonts and the rasteriser ahead of the first picture, by drawing next to nothing. */
