@@ -99,7 +99,8 @@ function suitability(hdu: FitsHdu, quantity: Quantity): number {
   return (quantity.kind === 'magnetic' ? 2 : 1) + (isNamed ? 0.5 : 0);
 }
 
-function namedHdu(file: FitsFile, wanted: number | string): FitsHdu {
+/** The image HDU of a number from 0 or an EXTNAME. Throws DataError, listing the HDUs, where it is none. */
+export function namedHdu(file: FitsFile, wanted: number | string): FitsHdu {
   const isNumber = typeof wanted === 'number' || /^\d+$/.test(wanted);
   const hdu = isNumber
     ? file.hdus[Number(wanted)]

@@ -104,22 +104,24 @@ function joined(items: readonly string[]): string {
     : `${items.slice(0, -1).join(', ')} and ${items[items.length - 1]}`;
 }
 
+/** A map but for its values and what they are. */
+export type PlacedMap = Omit<SolarMap, 'values' | 'component' | 'unit'>;
+
 /**
- * Reads the magnetogram of a file, converts it to G and places it on the Sun. Throws DataError where
- * the file shows something else or its unit is not known, GeometryError where it cannot be placed (the
- * message names the options that would help) or lies off the disk, FitsError for damaged data.
+ * Places the image of an HDU on the Sun. Throws GeometryError where it cannot be placed (the message names
+ * the options that would help, `--unit` among them if `needsUnit`) or lies off the disk.
  */
-export function readSolarMap(file: FitsFile, options: MapOptions = {}): SolarMap {
-  const hdu = chooseMagnetogramHdu(file, options);
+export function placeMap(
+  file: FitsFile,
+  hdu: number,
+  options: MapOptions = {},
+  needsUnit = false,
+): PlacedMap {
   const { header, shape } = file.hdus[hdu];
   const context = { file: file.name, hdu };
   const [nx, ny] = shape;
-  const quantity = readQuantity(header, options.unit);
-  if (options.unit !== undefined && quantity.kind === 'unknown')
-    throw new UsageError(`'${options.unit}' is no magnetic unit; wanted G, kG, mT, T or Mx/cm^2`);
   const place = readPlacement(header, nx, ny, options);
   const { observer, geometry } = place;
-  const needsUnit = quantity.kind !== 'magnetic';
   if (!observer || !geometry || place.missing.length > 0)
     throw new GeometryError(
       `the header does not say enough to place the picture on the Sun; give ${joined([
@@ -128,23 +130,10 @@ export function readSolarMap(file: FitsFile, options: MapOptions = {}): SolarMap
       ])}`,
       context,
     );
-  if (needsUnit)
-    throw new DataError(
-      `${quantity.found}, so the unit of the values is not known; give --unit (G, Mx/cm^2 or T) if they are a calibrated field`,
-      context,
-    );
   const pictureWarnings = checkPlacement(header, geometry, observer, nx, ny, options, context);
-  const plane = options.plane === undefined ? {} : { plane: options.plane };
-  const image = readImage(file, hdu, plane);
-  if (image.missing === nx * ny)
-    throw new DataError('the image has no values, all of its pixels are blank', context);
-  scale(image.values, quantity.gaussPerUnit ?? 1);
   return {
     nx,
     ny,
-    values: image.values,
-    component: options.component ?? quantity.component,
-    unit: options.unit ?? quantity.unit ?? 'G',
     geometryName: `${geometry.frame}, ${geometry.wcs.projection}`,
     geometry,
     observer,
@@ -153,7 +142,40 @@ export function readSolarMap(file: FitsFile, options: MapOptions = {}): SolarMap
     hdu,
     sourceName: file.name,
     fullDisk: isFullDisk(geometry, observer, nx, ny),
-    warnings: [...image.warnings, ...place.warnings, ...pictureWarnings],
+    warnings: [...place.warnings, ...pictureWarnings],
+  };
+}
+
+/**
+ * Reads the magnetogram of a file, converts it to G and places it on the Sun. Throws DataError where
+ * the file shows something else or its unit is not known, GeometryError where it cannot be placed (the
+ * message names the options that would help) or lies off the disk, FitsError for damaged data.
+ */
+export function readSolarMap(file: FitsFile, options: MapOptions = {}): SolarMap {
+  const hdu = chooseMagnetogramHdu(file, options);
+  const { header } = file.hdus[hdu];
+  const context = { file: file.name, hdu };
+  const quantity = readQuantity(header, options.unit);
+  if (options.unit !== undefined && quantity.kind === 'unknown')
+    throw new UsageError(`'${options.unit}' is no magnetic unit; wanted G, kG, mT, T or Mx/cm^2`);
+  const needsUnit = quantity.kind !== 'magnetic';
+  const placed = placeMap(file, hdu, options, needsUnit);
+  if (needsUnit)
+    throw new DataError(
+      `${quantity.found}, so the unit of the values is not known; give --unit (G, Mx/cm^2 or T) if they are a calibrated field`,
+      context,
+    );
+  const plane = options.plane === undefined ? {} : { plane: options.plane };
+  const image = readImage(file, hdu, plane);
+  if (image.missing === image.values.length)
+    throw new DataError('the image has no values, all of its pixels are blank', context);
+  scale(image.values, quantity.gaussPerUnit ?? 1);
+  return {
+    ...placed,
+    values: image.values,
+    component: options.component ?? quantity.component,
+    unit: options.unit ?? quantity.unit ?? 'G',
+    warnings: [...image.warnings, ...placed.warnings],
   };
 }
 
