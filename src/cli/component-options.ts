@@ -1,6 +1,11 @@
 import { existsSync } from 'node:fs';
 import { UsageError } from '../errors.js';
-import { COMPONENT_NAMES, type ComponentSource } from '../geometry/component-names.js';
+import type { AzimuthZero } from '../geometry/azimuth-zero.js';
+import {
+  COMPONENT_NAMES,
+  type ComponentSource,
+  componentFamily,
+} from '../geometry/component-names.js';
 import { hduArgument } from './arguments.js';
 
 /**
@@ -36,4 +41,25 @@ export function componentArgument(
   before: readonly ComponentSource[] = [],
 ): readonly ComponentSource[] {
   return [...before, parseComponent(text)];
+}
+
+/** Options of vector maps as commander gives them. */
+export interface ComponentOptions {
+  readonly component?: readonly ComponentSource[];
+  readonly azimuthZero?: AzimuthZero;
+}
+
+/** Throws UsageError unless there are either files or a complete set of components. */
+export function checkInputs(files: readonly string[], options: ComponentOptions): void {
+  const { component, azimuthZero } = options;
+  if (component === undefined) {
+    if (files.length === 0) throw new UsageError("missing required argument 'file'");
+    if (azimuthZero) throw new UsageError('--azimuth-zero belongs to --component azimuth=FILE');
+    return;
+  }
+  if (files.length > 0)
+    throw new UsageError(
+      `--component describes one vector map; ${files.join(', ')} beside it is one map too many`,
+    );
+  componentFamily(component);
 }

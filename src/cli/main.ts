@@ -1,7 +1,9 @@
 #!/usr/bin/env node
 import { Command, CommanderError, InvalidArgumentError, Option } from 'commander';
+import { parseAzimuthZero } from '../geometry/azimuth-zero.js';
 import { toolVersion } from '../report/tool-version.js';
 import { dateArgument, hduArgument, numberArgument, positionArgument } from './arguments.js';
+import { checkInputs, componentArgument } from './component-options.js';
 import { DONE, FAILED, USAGE } from './exit-codes.js';
 import { faultLine } from './faults.js';
 import type { QuickLookArguments } from './quicklook.js';
@@ -28,8 +30,18 @@ function addReadingOptions(command: Command): Command {
 function quicklookCommand(): Command {
   const command = new Command('quicklook')
     .description('figures and picture of one active region from a magnetogram in FITS')
-    .argument('<file...>', 'FITS files, also gzipped or tile-compressed');
+    .argument('[file...]', 'FITS files, also gzipped or tile-compressed');
   addReadingOptions(command)
+    .option(
+      '--component <name=file[#hdu][:plane]>',
+      'instead of files: one component of a vector map, and again for each; names are east or west, north or south, radial; or strength, inclination, azimuth, ambiguity; or error- and one of these',
+      componentArgument,
+    )
+    .option(
+      '--azimuth-zero <direction>',
+      'where azimuth is zero, and which way it counts: +x, -x, +y, -y of the image or north, east, south, west on the sky, then ,cw or ,ccw (default: +y,ccw)',
+      parseAzimuthZero,
+    )
     .option('--center <lon,lat>', 'Stonyhurst position of the patch centre [deg]', positionArgument)
     .option('--extent <Mm>', 'side of the patch [Mm]', numberArgument('a length', 1, 3000))
     .option('--pixel <Mm>', 'pixel of the patch [Mm]', numberArgument('a length', 0.01, 100))
@@ -70,6 +82,7 @@ function quicklookCommand(): Command {
     .option('--no-picture', 'do not draw the picture')
     .addHelpText('after', EXIT_CODES)
     .action(async (files: string[], options: QuickLookArguments) => {
+      checkInputs(files, options);
       const { runQuickLook } = await import('./quicklook.js');
       process.exitCode = await runQuickLook(files, { ...options, debug: isDebug() });
     });

@@ -7,6 +7,7 @@ import type { QuickLookDocument } from '../report/document.js';
 import { quickLook } from '../report/quick-look.js';
 import { regionSummary } from '../report/summary.js';
 import { quickLookCsv } from '../report/table.js';
+import type { ComponentOptions } from './component-options.js';
 import { DONE, FAILED, PARTLY } from './exit-codes.js';
 import { faultLine } from './faults.js';
 import { makeOutputFolder, writeTogether } from './output.js';
@@ -14,7 +15,7 @@ import { type PictureDrawer, startPictureDrawer } from './picture-drawer.js';
 import { type ReadingOptions, readingOptions } from './reading-options.js';
 
 /** Options of the command as commander gives them. */
-export interface QuickLookArguments extends ReadingOptions {
+export interface QuickLookArguments extends ReadingOptions, ComponentOptions {
   readonly center?: { readonly lonDeg: number; readonly latDeg: number };
   readonly extent?: number;
   readonly pixel?: number;
