@@ -1,5 +1,5 @@
 import { parentPort } from 'node:worker_threads';
-import { makeGrid } from '../grid/grid.js';
+import { type Grid2, type GridUnit, makeGrid } from '../grid/grid.js';
 import {
   prepareDrawing,
   type RegionPicture,
@@ -10,14 +10,22 @@ import type { PictureAnswer } from './picture-drawer.js';
 // Draws pictures in a thread of its own, which loads fonts and libraries while the main one computes.
 
 /** A picture that crossed into this thread: its grids have lost their methods. */
-function revive({ patch, radialField, currentDensity, ...rest }: RegionPicture): RegionPicture {
-  const grid = <G extends typeof radialField | NonNullable<typeof currentDensity>>(plain: G) =>
-    makeGrid(plain.values.data, patch.nx, patch.ny, plain.unit, plain.pixelMm);
+function revive({ vector, ...rest }: RegionPicture): RegionPicture {
+  const { patch, radialField, currentDensity } = rest;
+  const grid = <U extends GridUnit>({ values, unit, pixelMm }: Grid2<U>) =>
+    makeGrid(values.data, patch.nx, patch.ny, unit, pixelMm);
   return {
     ...rest,
-    patch: { ...patch, field: grid(patch.field) as typeof patch.field },
-    radialField: grid(radialField) as typeof radialField,
-    currentDensity: currentDensity && (grid(currentDensity) as typeof currentDensity),
+    patch: { ...patch, field: grid(patch.field) },
+    radialField: grid(radialField),
+    currentDensity: currentDensity && grid(currentDensity),
+    vector: vector && {
+      ...vector,
+      horizontal: { x: grid(vector.horizontal.x), y: grid(vector.horizontal.y) },
+      currentDensity: grid(vector.currentDensity),
+      currentNoise: grid(vector.currentNoise),
+      alpha: grid(vector.alpha),
+    },
   };
 }
 

@@ -4,9 +4,25 @@ import { type OklchColour, oklchToSrgb } from './oklab.js';
 export const COLOUR_COUNT = 511;
 const HALF = (COLOUR_COUNT - 1) / 2;
 
-/** Hues told apart under all common kinds of colour blindness: blue below zero, brown above. */
-const NEGATIVE_HUE_DEG = 252;
-const POSITIVE_HUE_DEG = 50;
+/** Which map a scale is for; no two share a hue. */
+export type ScaleName = 'field' | 'current' | 'alpha';
+
+/** The two hues of a scale and the share of the chroma below that both have room for. */
+export interface ScaleHues {
+  readonly negativeDeg: number;
+  readonly positiveDeg: number;
+  readonly chromaShare: number;
+}
+
+/**
+ * Pairs of hues told apart under all common kinds of colour blindness: blue and brown for the field,
+ * green and purple for the current, indigo and olive for alpha.
+ */
+export const SCALE_HUES: Readonly<Record<ScaleName, ScaleHues>> = {
+  field: { negativeDeg: 252, positiveDeg: 50, chromaShare: 1 },
+  current: { negativeDeg: 140, positiveDeg: 315, chromaShare: 1 },
+  alpha: { negativeDeg: 278, positiveDeg: 98, chromaShare: 0.78 },
+};
 
 const ZERO_LIGHTNESS = 0.965;
 const LIMIT_LIGHTNESS = 0.33;
@@ -17,20 +33,24 @@ const LIMIT_CHROMA = 0.08;
  * positive value. Both sides run through the same lightness and chroma, in equal steps of OKLab
  * distance: near white at zero and darkest at the limits, so lightness alone tells strength.
  */
-export function divergingScale(): Uint8Array {
-  kept ??= buildScale();
-  return kept;
+export function divergingScale(name: ScaleName = 'field'): Uint8Array {
+  let scale = kept.get(name);
+  if (!scale) {
+    scale = buildScale(SCALE_HUES[name]);
+    kept.set(name, scale);
+  }
+  return scale;
 }
 
-let kept: Uint8Array | undefined;
+const kept = new Map<ScaleName, Uint8Array>();
 
-function buildScale(): Uint8Array {
-  const side = evenSteps(HALF + 1);
+function buildScale({ negativeDeg, positiveDeg, chromaShare }: ScaleHues): Uint8Array {
+  const side = evenSteps(HALF + 1, chromaShare);
   const bytes = new Uint8Array(3 * COLOUR_COUNT);
   for (let step = 0; step <= HALF; step++) {
-    const { lightness, chroma } = oneSide(side[step]);
-    writeColour(bytes, HALF - step, { lightness, chroma, hueDeg: NEGATIVE_HUE_DEG });
-    writeColour(bytes, HALF + step, { lightness, chroma, hueDeg: POSITIVE_HUE_DEG });
+    const { lightness, chroma } = oneSide(side[step], chromaShare);
+    writeColour(bytes, HALF - step, { lightness, chroma, hueDeg: negativeDeg });
+    writeColour(bytes, HALF + step, { lightness, chroma, hueDeg: positiveDeg });
   }
   return bytes;
 }
@@ -42,21 +62,24 @@ export function colourIndex(value: number, limit: number): number {
 }
 
 /** Lightness and chroma at path parameter u, 0 at zero field and 1 at the limit. */
-export function oneSide(u: number): { readonly lightness: number; readonly chroma: number } {
+export function oneSide(
+  u: number,
+  chromaShare = 1,
+): { readonly lightness: number; readonly chroma: number } {
   return {
     lightness: ZERO_LIGHTNESS - (ZERO_LIGHTNESS - LIMIT_LIGHTNESS) * u,
     // Rises as fast from white as the gamut of both hues allows, then falls to the dark end.
-    chroma: LIMIT_CHROMA * u + 0.25 * u * (1 - u) * (1 + 0.3 * u),
+    chroma: chromaShare * (LIMIT_CHROMA * u + 0.25 * u * (1 - u) * (1 + 0.3 * u)),
   };
 }
 
 /** Path parameters of `count` points at equal OKLab distance along one side. */
-function evenSteps(count: number): Float64Array {
+function evenSteps(count: number, chromaShare: number): Float64Array {
   const fine = 2000;
   const length = new Float64Array(fine + 1);
-  let previous = oneSide(0);
+  let previous = oneSide(0, chromaShare);
   for (let i = 1; i <= fine; i++) {
-    const here = oneSide(i / fine);
+    const here = oneSide(i / fine, chromaShare);
     const dL = here.lightness - previous.lightness;
     length[i] = length[i - 1] + Math.hypot(dL, here.chroma - previous.chroma);
     previous = here;

@@ -1,7 +1,8 @@
+import { barFacts } from './bar-facts.js';
 import type { Canvas } from './canvas.js';
 import { drawFoot, drawNote, drawTitle, noteLines } from './captions.js';
 import { colourBarHeight, drawColourBar } from './colour-bar.js';
-import { type Drawing, newDrawing } from './drawing.js';
+import { type Drawing, drawText, newDrawing, type Rect, styledWidth } from './drawing.js';
 import { drawTable, splitRows, tableColumns, tableHeight, tableRows } from './figures-table.js';
 import { drawFlags, flagLines, flagsHeight } from './flag-list.js';
 import { arrange, type Layout, type LayoutNeeds } from './layout.js';
@@ -11,6 +12,9 @@ import { blankRaster, type Raster } from './map-layer.js';
 import { drawMap, type MapContent, mapContent } from './map-panel.js';
 import type { RegionPicture } from './region-picture.js';
 import { drawMarks, marksWidth } from './scale-marks.js';
+import { HEADING } from './style.js';
+import { arrangeVector } from './vector-layout.js';
+import { drawPanel, PANEL_HEADINGS, type PanelContent, panelContents } from './vector-panels.js';
 
 /** A picture before encoding, with the places of its parts for checks. */
 export interface ComposedPicture {
@@ -19,47 +23,60 @@ export interface ComposedPicture {
   readonly paint: () => Raster;
   readonly layout: Layout;
   readonly content: MapContent;
+  /** Current and alpha of a vector map; none otherwise. */
+  readonly panels: readonly PanelContent[];
 }
+
+/** Fewer flags beside the taller table of a vector map. */
+const MOST_VECTOR_FLAG_LINES = 18;
+const HEADING_GAP = 24;
 
 /** Lays out and draws the picture of one region; pure, apart from reading the font once. */
 export function composePicture(picture: RegionPicture): ComposedPicture {
-  const { patch, region } = picture;
+  const { patch, region, vector } = picture;
   const rows = tableRows(region);
   const columns = tableColumns(rows);
   const halves = splitRows(rows);
+  const bars = barFacts(picture);
   const mapWidthMm = patch.nx * patch.pixelMm;
+  const headingWidth = vector ? styledWidth(PANEL_HEADINGS[0], HEADING) + HEADING_GAP : 0;
+  const flags = (width: number) => flagLines(region.flags, width, vector && MOST_VECTOR_FLAG_LINES);
   const needs: LayoutNeeds = {
     nx: patch.nx,
     ny: patch.ny,
-    marksWidth: (mapWidthPx) => marksWidth(mapWidthMm, mapWidthPx),
-    colourBarHeight: () => 0,
+    marksWidth: (mapWidthPx) => headingWidth + marksWidth(mapWidthMm, mapWidthPx),
+    colourBarHeight: (width) => Math.max(...bars.map((bar) => colourBarHeight(width, bar))),
     legendHeight: () => 0,
     tableWidth: columns.width,
     tableHeight: tableHeight(rows),
     halfHeights: [tableHeight(halves[0]), tableHeight(halves[1])],
-    flagsHeight: (width) => flagsHeight(flagLines(region.flags, width)),
+    flagsHeight: (width) => flagsHeight(flags(width)),
     noteHeight: (width) => 16 * noteLines(rows, width).length,
   };
-  // The place of the map does not depend on the legend, but what the legend says depends on the map.
-  const { map } = arrange(needs);
-  const content = mapContent(picture, { ...map, nx: patch.nx, ny: patch.ny });
-  const entries = legendEntries(picture, content);
-  const layout = arrange({
-    ...needs,
-    colourBarHeight: (width) => colourBarHeight(width, content.limit),
-    legendHeight: (width) => legendHeight(entries, width),
-  });
+  const place = vector ? arrangeVector : arrange;
+  // The place of the maps does not depend on the legend, but what it says depends on the maps.
+  const first = place(needs);
+  const content = mapContent(picture, { ...first.map, nx: patch.nx, ny: patch.ny });
+  const maps = first.panels.map(({ map }) => map);
+  const panels = vector ? panelContents(picture, vector, bars, maps) : [];
+  const entries = legendEntries(picture, content, panels);
+  const layout = place({ ...needs, legendHeight: (width) => legendHeight(entries, width) });
   const canvas: Canvas = { drawing: newDrawing(), paints: [] };
   drawMap(canvas, picture, content);
-  drawMarks(canvas.drawing, layout.marks, mapWidthMm, map.width);
-  drawColourBar(canvas, layout.colourBar, content.limit);
+  panels.forEach((panel, i) => {
+    drawPanel(canvas, picture, panel, layout.panels[i].marks);
+  });
+  drawFieldStrip(canvas.drawing, picture, layout, headingWidth);
+  [layout, ...layout.panels].forEach(({ colourBar }, i) => {
+    drawColourBar(canvas, colourBar, bars[i]);
+  });
   drawLegend(canvas, layout.legend, entries);
   const parts = layout.tables.length === 1 ? [rows] : halves;
   layout.tables.forEach(({ x, y }, i) => {
     drawTable(canvas.drawing, x, y, parts[i], columns);
   });
   drawNote(canvas.drawing, layout.note, noteLines(rows, layout.note.width));
-  drawFlags(canvas.drawing, layout.flags, flagLines(region.flags, layout.flags.width));
+  drawFlags(canvas.drawing, layout.flags, flags(layout.flags.width));
   drawTitle(canvas.drawing, layout.title, picture);
   drawFoot(canvas.drawing, layout.foot, picture);
   const paint = () => {
@@ -67,5 +84,19 @@ export function composePicture(picture: RegionPicture): ComposedPicture {
     for (const each of canvas.paints) each(raster);
     return raster;
   };
-  return { drawing: canvas.drawing, paint, layout, content };
+  return { drawing: canvas.drawing, paint, layout, content, panels };
+}
+
+/** Scale bar and compass above the field, after its heading where there are other panels. */
+function drawFieldStrip(
+  drawing: Drawing,
+  { patch, vector }: RegionPicture,
+  { marks, map }: Layout,
+  headingWidth: number,
+): void {
+  if (vector) {
+    drawText(drawing, PANEL_HEADINGS[0], marks.x, marks.y + marks.height - 8, HEADING);
+  }
+  const strip: Rect = { ...marks, x: marks.x + headingWidth, width: marks.width - headingWidth };
+  drawMarks(drawing, strip, patch.nx * patch.pixelMm, map.width);
 }

@@ -15,6 +15,7 @@ const TRACE_SIDE = 200;
 /** Lines shorter than this are specks. */
 const LEAST_LENGTH_PX = 24;
 const LEAST_STEP_PX = 1.6;
+const NOISE_DEVIATIONS = 3;
 
 /**
  * Levels [mA/m^2] worth drawing, weak first, for both directions: round numbers, the upper near two
@@ -38,12 +39,40 @@ export interface CurrentGrid {
 /** Brings a map to the resolution contours are traced at, smooths it and picks the levels. */
 export function currentGrid(map: Grid2<'mA/m^2'>): CurrentGrid {
   const [ny, nx] = map.values.shape;
+  return smoothedGrid(map, Math.max(nx, ny) > 100 ? 1 : 0);
+}
+
+/**
+ * The same for a measured map of 1-sigma noise `sigma` [mA/m^2] per pixel: smoothed further, and only
+ * levels beyond three deviations of what the smoothing leaves of the noise.
+ */
+export function measuredCurrentGrid(map: Grid2<'mA/m^2'>, sigma: number): CurrentGrid {
+  const [ny, nx] = map.values.shape;
+  const passes = Math.max(nx, ny) > 100 ? 4 : 2;
+  const grid = smoothedGrid(map, passes);
+  const left = (sigma * noiseShare(passes) * grid.width) / nx;
+  return { ...grid, levels: grid.levels.filter((level) => !(level < NOISE_DEVIATIONS * left)) };
+}
+
+/**
+ * Share of white noise that n passes of the 1-2-1 filter leave: the root of the sum of the squared
+ * weights, C(4n, 2n) / 16^n in two dimensions.
+ */
+function noiseShare(passes: number): number {
+  let share = 1;
+  for (let k = 1; k <= 2 * passes; k++) share *= (2 * passes + k) / k / 4;
+  return share;
+}
+
+function smoothedGrid(map: Grid2<'mA/m^2'>, passes: number): CurrentGrid {
+  const [ny, nx] = map.values.shape;
   const shrink = Math.min(1, TRACE_SIDE / Math.max(nx, ny));
   const [width, height] = [Math.ceil(nx * shrink), Math.ceil(ny * shrink)];
   const coarse = shrink < 1 ? resampleMap(map, width, height, false) : map.values.data;
   // A missing current is drawn as none, so that lines end where the map does.
   const filled = coarse.map((value) => (Number.isNaN(value) ? 0 : value));
-  const values = Math.max(nx, ny) > 100 ? smoothOnce(filled, width, height) : filled;
+  let values: Float64Array = filled;
+  for (let pass = 0; pass < passes; pass++) values = smoothOnce(values, width, height);
   return { values, width, height, levels: currentLevels(values) };
 }
 

@@ -102,9 +102,10 @@ export function drawLine(
 /** Shapes drawn by `draw` show inside the rectangle only. */
 export function drawClipped(drawing: Drawing, clip: Rect, draw: () => void): void {
   const { x, y, width, height } = clip;
+  const id = `map-${x}-${y}`;
   drawing.shapes.push(
-    `<clipPath id="map"><rect x="${x}" y="${y}" width="${width}" height="${height}"/></clipPath>`,
-    '<g clip-path="url(#map)">',
+    `<clipPath id="${id}"><rect x="${x}" y="${y}" width="${width}" height="${height}"/></clipPath>`,
+    `<g clip-path="url(#${id})">`,
   );
   draw();
   drawing.shapes.push('</g>');

@@ -12,17 +12,31 @@ import {
   ZEBRA_INK,
 } from './style.js';
 
-/** The headings of the table, each with the figures under it. */
+/**
+ * The headings of the table, each with the figures under it. Those that need a vector map show only
+ * where a region has them.
+ */
 const GROUPS: Readonly<Record<string, readonly QuantityKey[]>> = {
   Flux: ['positive_flux', 'negative_flux', 'unsigned_flux', 'net_flux', 'flux_imbalance'],
   Field: ['peak_positive_field', 'peak_negative_field', 'strong_field_area'],
-  'Magnetic energy': ['potential_energy', 'free_energy', 'free_energy_ceiling', 'total_energy'],
+  'Magnetic energy': [
+    'potential_energy',
+    'free_energy',
+    'free_energy_ceiling',
+    'total_energy',
+    'virial_energy',
+    'virial_origin_change',
+  ],
   'Electric current': [
     'upward_current',
     'downward_current',
+    'unsigned_current',
     'net_current_positive',
     'net_current_negative',
+    'neutralization_positive',
+    'neutralization_negative',
     'peak_current_density',
+    'current_helicity_mean',
     'force_free_alpha',
   ],
   'Polarity inversion line': [
@@ -30,9 +44,13 @@ const GROUPS: Readonly<Record<string, readonly QuantityKey[]>> = {
     'strong_gradient_line_length',
     'gradient_weighted_line_length',
     'near_line_flux',
+    'shear_line_length',
   ],
   'Circuit equivalent': ['inductance', 'lundquist_number'],
+  'Force over magnetic pressure': ['net_force_x', 'net_force_y', 'net_force_z'],
+  'Ambiguity of the azimuth': ['disambiguation_flux_fraction_changed'],
 };
+const GROUPED = new Set<string>(Object.values(GROUPS).flat());
 
 /** One line of the table: a heading, or a figure. */
 export interface TableRow {
@@ -59,14 +77,24 @@ const TITLES = { value: 'Value', interval: '16–84 % interval', unit: 'Unit', b
 
 /** All figures as rows under their headings; those not to be had show a dash. */
 export function tableRows(region: RegionFigures): readonly TableRow[] {
-  return Object.entries(GROUPS).flatMap(([title, keys]) => [
-    { name: title, heading: true, value: '', interval: '', unit: '', basis: '' as const },
-    ...keys.map((key) => figureRow(region, key)),
-  ]);
+  const others = Object.keys(region.quantities).filter((key) => !GROUPED.has(key));
+  const groups = { ...GROUPS, 'Other figures': others as QuantityKey[] };
+  return Object.entries(groups).flatMap(([title, keys]) => {
+    const shown = keys.filter((key) => isExpected(key) || region.quantities[key]);
+    if (shown.length === 0) return [];
+    const heading = { name: title, heading: true, value: '', interval: '', unit: '' };
+    return [{ ...heading, basis: '' as const }, ...shown.map((key) => figureRow(region, key))];
+  });
+}
+
+/** True for what every map should give: missing, it shows as not available. */
+function isExpected(key: QuantityKey): boolean {
+  return key in QUANTITY_FACTS && !('vector' in QUANTITY_FACTS[key]);
 }
 
 function figureRow(region: RegionFigures, key: QuantityKey): TableRow {
-  const { label } = QUANTITY_FACTS[key];
+  // A figure newer than this table still shows, under its key.
+  const label = QUANTITY_FACTS[key]?.label ?? key.replaceAll('_', ' ');
   const name = label[0].toUpperCase() + label.slice(1);
   const quantity = region.quantities[key];
   if (!quantity || quantity.value === null || !Number.isFinite(quantity.value)) {

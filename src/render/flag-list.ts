@@ -13,12 +13,16 @@ interface FlagLine {
 }
 
 /** The flags wrapped at `width`; a very long one and a very long list are cut, and say so. */
-export function flagLines(flags: readonly string[], width: number): readonly FlagLine[] {
+export function flagLines(
+  flags: readonly string[],
+  width: number,
+  mostLines = MOST_LINES,
+): readonly FlagLine[] {
   const lines: FlagLine[] = [];
   for (let i = 0; i < flags.length; i++) {
     if (oneLine(flags[i]) === '') continue;
     const wrapped = wrapText(flags[i], width - INDENT, BODY, MOST_LINES_PER_FLAG);
-    if (lines.length + wrapped.length > MOST_LINES) {
+    if (lines.length + wrapped.length > mostLines) {
       const left = flags.length - i;
       lines.push({
         text: `${left} more ${left === 1 ? 'flag' : 'flags'} in the JSON file`,

@@ -20,6 +20,9 @@ export interface LayoutNeeds {
   readonly noteHeight: (width: number) => number;
 }
 
+/** Places of a panel beside the field: heading strip, map with its labels, colour bar. */
+export type PanelPlaces = MapArea & Pick<Layout, 'colourBar'>;
+
 /** Places of all parts, in whole pixels; they do not overlap and lie within the picture. */
 export interface Layout {
   readonly width: number;
@@ -31,6 +34,8 @@ export interface Layout {
   readonly latitudes: Rect;
   readonly longitudes: Rect;
   readonly colourBar: Rect;
+  /** Current and alpha of a vector map; none otherwise. */
+  readonly panels: readonly PanelPlaces[];
   readonly legend: Rect;
   /** One table, or its two halves side by side. */
   readonly tables: readonly Rect[];
@@ -41,13 +46,13 @@ export interface Layout {
 
 const TITLE_HEIGHT = 50;
 const FOOT_HEIGHT = 22;
-const AXIS_LEFT = 46;
+export const AXIS_LEFT = 46;
 const AXIS_BOTTOM = 24;
 /** Longitudes may stick out to the right of the frame by half a label. */
-const AXIS_RIGHT = 18;
-const GAP = 16;
-const COLUMN_GAP = 28;
-const TOP = MARGIN + TITLE_HEIGHT + 14;
+export const AXIS_RIGHT = 18;
+export const GAP = 16;
+export const COLUMN_GAP = 28;
+export const TOP = MARGIN + TITLE_HEIGHT + 14;
 
 /** Arranges the parts by the shape of the map: wider than 3 : 1, taller than 1 : 2, or between. */
 export function arrange(needs: LayoutNeeds): Layout {
@@ -120,22 +125,31 @@ function arrangeWide(needs: LayoutNeeds): Layout {
 }
 
 type Size = { readonly width: number; readonly height: number };
-type MapArea = Pick<Layout, 'marks' | 'map' | 'latitudes' | 'longitudes'>;
-type Body = Omit<Layout, 'width' | 'height' | 'title' | 'foot'>;
+export type MapArea = Pick<Layout, 'marks' | 'map' | 'latitudes' | 'longitudes'>;
+type Body = Omit<Layout, 'width' | 'height' | 'title' | 'foot' | 'panels'> &
+  Partial<Pick<Layout, 'panels'>>;
 
-function placeMap(x: number, y: number, size: Size, needs: LayoutNeeds): MapArea {
+/** A map with `strip` pixels above it for scale bar and compass, and room for its labels. */
+export function placeMap(
+  x: number,
+  y: number,
+  size: Size,
+  needs: LayoutNeeds,
+  strip = MARKS_HEIGHT,
+): MapArea {
   const left = x + AXIS_LEFT;
   const marksWidth = Math.max(size.width, needs.marksWidth(size.width));
-  const map = box(left, y + MARKS_HEIGHT, size.width, size.height);
+  const map = box(left, y + strip, size.width, size.height);
   return {
-    marks: box(left, y, marksWidth, MARKS_HEIGHT),
+    marks: box(left, y, marksWidth, strip),
     map,
     latitudes: box(x, map.y, AXIS_LEFT, size.height),
     longitudes: box(x, bottom(map), AXIS_LEFT + size.width + AXIS_RIGHT, AXIS_BOTTOM),
   };
 }
 
-function placeSide(
+/** Table, note and flags one below the other. */
+export function placeSide(
   x: number,
   y: number,
   needs: LayoutNeeds,
@@ -146,14 +160,26 @@ function placeSide(
   return { tables: [table], note, flags };
 }
 
-function finish(width: number, body: Body): Layout {
+/** Adds title and foot, and the size of the whole. */
+export function finish(width: number, body: Body): Layout {
   const inner = Math.ceil(width) - 2 * MARGIN;
+  const { panels = [], tables } = body;
+  const bars = panels.flatMap(({ longitudes, colourBar }) => [longitudes, colourBar]);
   const lowest = Math.max(
-    ...[body.longitudes, body.colourBar, body.legend, body.note, body.flags].map(bottom),
+    ...[
+      body.longitudes,
+      body.colourBar,
+      body.legend,
+      body.note,
+      body.flags,
+      ...tables,
+      ...bars,
+    ].map(bottom),
   );
   const foot = box(MARGIN, lowest + GAP, inner, FOOT_HEIGHT);
   return {
     ...body,
+    panels,
     width: Math.ceil(width),
     height: bottom(foot) + 14,
     title: box(MARGIN, MARGIN - 6, inner, TITLE_HEIGHT),
@@ -162,7 +188,7 @@ function finish(width: number, body: Body): Layout {
 }
 
 /** A rectangle on whole pixels. */
-function box(x: number, y: number, width: number, height: number): Rect {
+export function box(x: number, y: number, width: number, height: number): Rect {
   return {
     x: Math.round(x),
     y: Math.round(y),
@@ -171,7 +197,7 @@ function box(x: number, y: number, width: number, height: number): Rect {
   };
 }
 
-function bottom(rect: Rect): number {
+export function bottom(rect: Rect): number {
   return rect.y + rect.height;
 }
 

@@ -1,22 +1,32 @@
 import { gridStepDeg } from './coordinate-grid.js';
+import { CURRENT_DEVIATIONS } from './dead-zone.js';
 import { isSupposed } from './figures-table.js';
 import type { LegendColumns, LegendEntry } from './legend.js';
 import type { MapContent } from './map-panel.js';
-import { plainNumber, unitText } from './number-format.js';
+import { quantileOfSize } from './nice-number.js';
+import { numberText, plainNumber, unitText } from './number-format.js';
 import type { RegionPicture } from './region-picture.js';
+import type { PanelContent } from './vector-panels.js';
 
 /** What the legend must explain for this map: only what is drawn, and what is missing. */
-export function legendEntries(picture: RegionPicture, content: MapContent): LegendColumns {
+export function legendEntries(
+  picture: RegionPicture,
+  content: MapContent,
+  panels: readonly PanelContent[],
+): LegendColumns {
+  const hasMissing = content.hasMissing || panels.some((panel) => panel.hasMissing);
   const step = plainNumber(gridStepDeg(picture.patch, content.frame));
   return [
     [
       ...inversionEntries(content),
       ...currentEntries(picture, content),
+      ...tickEntries(content),
       ...fieldLineEntries(picture, content),
     ],
     [
       ...(content.poles.length > 0 ? [entry('poles', 'Strongest field, both signs')] : []),
-      ...(content.hasMissing ? [entry('hatch', 'No data, or beyond the limb')] : []),
+      ...(hasMissing ? [entry('hatch', 'No data, or beyond the limb')] : []),
+      ...deadEntries(picture),
       entry('grid', `Stonyhurst grid, every ${step}°`),
     ],
   ];
@@ -34,10 +44,15 @@ function inversionEntries({ inversion }: MapContent): readonly LegendEntry[] {
 function currentEntries(picture: RegionPicture, content: MapContent): readonly LegendEntry[] {
   if (!content.current) return [entry('none', 'No current map')];
   const { levels } = content.current;
-  if (levels.length === 0) return [entry('none', 'No electric current in the map')];
+  if (levels.length === 0) {
+    const text = picture.vector
+      ? 'No electric current above noise'
+      : 'No electric current in the map';
+    return [entry('none', text)];
+  }
   const basis = picture.region.quantities.peak_current_density?.basis;
-  const supposed = basis !== undefined && isSupposed(basis);
-  const note = supposed ? `, ${basis}` : '';
+  const supposed = !picture.vector && basis !== undefined && isSupposed(basis);
+  const note = picture.vector ? ', measured' : supposed ? `, ${basis}` : '';
   const unit = unitText('mA/m^2');
   const list = (sign: string) => levels.map((level) => sign + plainNumber(level)).join(', ');
   return [
@@ -62,6 +77,28 @@ function fieldLineEntries(picture: RegionPicture, content: MapContent): readonly
     entries.push({ sample: 'leaving', text, supposed });
   }
   return entries;
+}
+
+/** The strength that a stroke of the length shown stands for, and where strokes begin. */
+function tickEntries({ ticks }: MapContent): readonly LegendEntry[] {
+  if (!ticks) return [];
+  const { referenceG, referencePx, leastG, shortestG } = ticks;
+  const least = numberText(leastG, 'G', 2);
+  if (ticks.ticks.length === 0)
+    return [entry('none', `No horizontal field above noise (${least})`)];
+  const short = shortestG > leastG ? `, shortest up to ${numberText(shortestG, 'G', 2)}` : '';
+  const text = `Horizontal field ${plainNumber(referenceG)} G; drawn from ${least}${short}`;
+  return [{ sample: 'tick', text, supposed: false, tickPx: referencePx }];
+}
+
+/** What the grey of the current and alpha panels means. */
+function deadEntries({ vector }: RegionPicture): readonly LegendEntry[] {
+  if (!vector) return [];
+  const noise = quantileOfSize(vector.currentNoise.values.data, 0.5);
+  const current = numberText(CURRENT_DEVIATIONS * noise, 'mA/m^2', 2);
+  const field = numberText(vector.alphaLeastG, 'G', 2);
+  const text = `Below noise, or at an edge: current under ${CURRENT_DEVIATIONS} deviations (mostly ${current}), alpha under a field of ${field}`;
+  return [entry('dead', text)];
 }
 
 function entry(sample: LegendEntry['sample'], text: string): LegendEntry {

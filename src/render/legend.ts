@@ -1,8 +1,9 @@
 import type { Canvas } from './canvas.js';
 import { drawLines, drawText, type Rect } from './drawing.js';
 import { drawClosedLine, drawOpenLine } from './field-line-layer.js';
+import { drawTicks, referenceTick } from './horizontal-ticks.js';
 import { drawCurrentLine, drawPlainLine, drawPoleSign, drawStrongLine } from './line-styles.js';
-import { paintHatch } from './map-layer.js';
+import { paintDead, paintHatch } from './map-layer.js';
 import { FRAME_INK, SMALL, SMALL_PRIOR } from './style.js';
 import { wrapText } from './text-fit.js';
 
@@ -12,7 +13,9 @@ export type LegendSample =
   | 'up'
   | 'down'
   | 'poles'
+  | 'tick'
   | 'hatch'
+  | 'dead'
   | 'grid'
   | 'none'
   | 'closed'
@@ -23,6 +26,8 @@ export interface LegendEntry {
   readonly text: string;
   /** True when what it names rests on a prior or an assumption. */
   readonly supposed: boolean;
+  /** Length of the stroke that stands for the strength named. */
+  readonly tickPx?: number;
 }
 
 /** Entries of the wider first and the narrower second column. */
@@ -55,7 +60,7 @@ export function drawLegend(canvas: Canvas, box: Rect, columns: LegendColumns): v
     const x = box.x + column.x;
     let y = box.y;
     for (const entry of column.entries) {
-      drawSample(canvas, entry.sample, x, y + 7);
+      drawSample(canvas, entry, x, y + 7);
       const lines = entryLines(entry, column.width);
       const style = entry.supposed ? SMALL_PRIOR : SMALL;
       lines.forEach((line, k) => {
@@ -90,7 +95,12 @@ function textLeft(entry: LegendEntry): number {
   return entry.sample === 'none' ? 0 : TEXT_LEFT;
 }
 
-function drawSample({ drawing, paints }: Canvas, sample: LegendSample, x: number, y: number): void {
+function drawSample(
+  { drawing, paints }: Canvas,
+  { sample, tickPx = 0 }: LegendEntry,
+  x: number,
+  y: number,
+): void {
   const wave = [[x, y + 4, x + 12, y - 2, x + 24, y + 2, x + SAMPLE_WIDTH, y - 4]];
   const flat = [[x, y, x + SAMPLE_WIDTH, y]];
   if (sample === 'line') drawPlainLine(drawing, wave);
@@ -100,12 +110,12 @@ function drawSample({ drawing, paints }: Canvas, sample: LegendSample, x: number
   if (sample === 'closed') drawClosedLine(drawing, wave);
   if (sample === 'leaving') drawOpenLine(drawing, wave);
   if (sample === 'grid') drawLines(drawing, flat, FRAME_INK, 0.8, { 'stroke-opacity': 0.6 });
+  if (sample === 'tick') drawTicks(drawing, [referenceTick(x + SAMPLE_WIDTH / 2, y, tickPx)]);
   if (sample === 'poles') {
     drawPoleSign(drawing, x + 8, y, 1);
     drawPoleSign(drawing, x + 28, y, -1);
   }
-  if (sample === 'hatch') {
-    const box = { x: Math.round(x), y: Math.round(y - 6), width: SAMPLE_WIDTH, height: 13 };
-    paints.push((raster) => paintHatch(raster, box));
-  }
+  const box = { x: Math.round(x), y: Math.round(y - 6), width: SAMPLE_WIDTH, height: 13 };
+  if (sample === 'hatch') paints.push((raster) => paintHatch(raster, box));
+  if (sample === 'dead') paints.push((raster) => paintDead(raster, box));
 }

@@ -1,5 +1,5 @@
 import type { Grid2 } from '../grid/grid.js';
-import { colourIndex, divergingScale } from './colour-scale.js';
+import { colourIndex, divergingScale, type ScaleName } from './colour-scale.js';
 import type { Rect } from './drawing.js';
 import { isBlocky, type MapFrame } from './map-frame.js';
 import { niceLimitAbove, quantileOfSize } from './nice-number.js';
@@ -9,6 +9,9 @@ import { resampleMap } from './resample.js';
 export const LIMIT_QUANTILE = 0.995;
 /** Never stretch the colours over less than this: a quiet map would look like an active region. */
 const LEAST_LIMIT_GAUSS = 50;
+
+/** Level of grey of a dead zone: darker than the middle of the scales, which is near white. */
+export const DEAD_GREY = 224;
 
 /** Raw sRGB pixels of the whole picture, row 0 at the top. */
 export interface Raster {
@@ -33,22 +36,32 @@ export function displayField(field: Grid2<'G'>, frame: MapFrame): Float64Array {
   return resampleMap(field, frame.width, frame.height, isBlocky(frame));
 }
 
-/** Paints display samples (row 0 south) into the frame; NaN becomes a grey hatch. */
+/** Display samples with what they need to be painted. */
+export interface ScaledMap {
+  /** Row 0 south; NaN is missing, or dead where `dead` says so. */
+  readonly samples: Float64Array;
+  readonly limit: number;
+  readonly scale: ScaleName;
+  /** 1 where the quantity lies below its noise. */
+  readonly dead?: Uint8Array;
+}
+
+/** Paints a map into the frame; what is missing becomes a grey hatch, what is dead flat grey. */
 export function paintMap(
   raster: Raster,
   frame: MapFrame,
-  samples: Float64Array,
-  limit: number,
+  { samples, limit, scale: name, dead }: ScaledMap,
 ): void {
   const { rgb } = raster;
-  const scale = divergingScale();
+  const scale = divergingScale(name);
   for (let row = 0; row < frame.height; row++) {
     const from = frame.width * (frame.height - 1 - row);
     let to = 3 * (frame.x + raster.width * (frame.y + row));
     for (let column = 0; column < frame.width; column++, to += 3) {
       const value = samples[from + column];
       if (Number.isNaN(value)) {
-        rgb.fill(hatchGrey(column, row), to, to + 3);
+        const grey = dead?.[from + column] === 1 ? DEAD_GREY : hatchGrey(column, row);
+        rgb.fill(grey, to, to + 3);
         continue;
       }
       const colour = 3 * colourIndex(value, limit);
@@ -60,8 +73,8 @@ export function paintMap(
 }
 
 /** Paints the colour scale from left (negative limit) to right. */
-export function paintScale(raster: Raster, bar: Rect): void {
-  const scale = divergingScale();
+export function paintScale(raster: Raster, bar: Rect, name: ScaleName): void {
+  const scale = divergingScale(name);
   for (let column = 0; column < bar.width; column++) {
     const colour = 3 * colourIndex((2 * (column + 0.5)) / bar.width - 1, 1);
     for (let row = 0; row < bar.height; row++) {
@@ -80,6 +93,14 @@ export function paintHatch(raster: Raster, box: Rect): void {
       const to = 3 * (box.x + column + raster.width * (box.y + row));
       raster.rgb.fill(hatchGrey(column, row), to, to + 3);
     }
+  }
+}
+
+/** Paints the grey of dead zones. */
+export function paintDead(raster: Raster, box: Rect): void {
+  for (let row = 0; row < box.height; row++) {
+    const from = 3 * (box.x + raster.width * (box.y + row));
+    raster.rgb.fill(DEAD_GREY, from, from + 3 * box.width);
   }
 }
 

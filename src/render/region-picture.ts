@@ -8,6 +8,20 @@ import { newDrawing } from './drawing.js';
 import { encodePng, layOver, rasteriseDrawing } from './encode.js';
 import { textWidth } from './font.js';
 
+/** What a vector map adds to the picture: measured maps on the grid of the patch, NaN where missing. */
+export interface VectorMaps {
+  /** Horizontal field, x west and y north. */
+  readonly horizontal: { readonly x: Grid2<'G'>; readonly y: Grid2<'G'> };
+  /** 1-sigma noise of one horizontal component. */
+  readonly horizontalNoiseG: number;
+  /** Vertical current density with its 1-sigma noise per pixel. */
+  readonly currentDensity: Grid2<'mA/m^2'>;
+  readonly currentNoise: Grid2<'mA/m^2'>;
+  readonly alpha: Grid2<'1/Mm'>;
+  /** A weaker radial field has no alpha. */
+  readonly alphaLeastG: number;
+}
+
 /** What the picture of one region shows. */
 export interface RegionPicture {
   /** File name, shown as the title. */
@@ -20,6 +34,8 @@ export interface RegionPicture {
   readonly radialField: Grid2<'G'>;
   readonly currentDensity: Grid2<'mA/m^2'> | undefined;
   readonly inversionLines: readonly InversionLine[];
+  /** With it the picture has horizontal-field strokes and panels of measured current and alpha. */
+  readonly vector?: VectorMaps | undefined;
   /** Field lines to draw, in Mm from the first pixel of the patch. */
   readonly fieldLines?: readonly FieldLine[];
 }
@@ -32,8 +48,9 @@ export async function prepareDrawing(): Promise<void> {
 
 /**
  * Draws the picture of one region as PNG bytes: field map with its scale, coordinate grid, inversion
- * line and current contours, the figures with interval and basis, and the flags. Text is drawn
- * as outlines, so no installed font is needed; the same input gives the same pixels.
+ * line and current contours, the figures with interval and basis, and the flags; of a vector map also
+ * the horizontal field, the measured current and alpha. Text is drawn as outlines, so no installed
+ * font is needed; the same input gives the same pixels.
  */
 export async function renderRegionPicture(picture: RegionPicture): Promise<Uint8Array> {
   const { drawing, layout, paint } = composePicture(picture);

@@ -11,6 +11,8 @@ const PRIOR_INK = '#5f6499';
 
 export const INVERSION_INK = '#111111';
 export const STRONG_CORE = '#ffe14d';
+/** Strokes of the horizontal field. */
+export const TICK_INK = '#14181d';
 export const CURRENT_INK = '#0b6b3a';
 export const FRAME_INK = '#2b3138';
 export const RULE_INK = '#d0d7de';

@@ -72,8 +72,13 @@ const CASES: Readonly<Record<string, () => RegionPicture>> = {
 };
 
 function boxes(layout: Layout): Readonly<Record<string, Rect>> {
-  const { width, height, tables, ...single } = layout;
-  return { ...single, ...Object.fromEntries(tables.map((table, i) => [`table ${i}`, table])) };
+  const { width, height, tables, panels, ...single } = layout;
+  const named = (list: readonly Rect[], name: string) =>
+    list.map((rect, i) => [`${name} ${i}`, rect]);
+  const rects = panels.flatMap((panel, i) =>
+    Object.entries(panel).map(([name, rect]) => [`${name} of panel ${i}`, rect]),
+  );
+  return { ...single, ...Object.fromEntries([...named(tables, 'table'), ...rects]) };
 }
 
 function overlap(a: Rect, b: Rect): boolean {
