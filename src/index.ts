@@ -7,6 +7,7 @@ export {
   analyseRegion,
   type RegionAnalysis,
 } from './figures/analyse-region.js';
+export { analyseVectorMap, type VectorMapAnalysis } from './figures/analyse-vector-map.js';
 export {
   type Basis,
   QUANTITY_FACTS,
@@ -24,5 +25,11 @@ export { type MapOptions, readSolarMap, type SolarMap } from './geometry/solar-m
 export { type Grid2, makeGrid } from './grid/grid.js';
 export { type RegionPicture, renderRegionPicture } from './render/region-picture.js';
 export { type QuickLookDocument, quickLookDocument, type RegionJson } from './report/document.js';
-export { type QuickLook, type QuickLookOptions, quickLook } from './report/quick-look.js';
+export {
+  type QuickLook,
+  type QuickLookOptions,
+  quickLook,
+  type VectorQuickLookOptions,
+  vectorQuickLook,
+} from './report/quick-look.js';
 export { quickLookCsv } from './report/table.js';

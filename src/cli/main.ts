@@ -42,6 +42,12 @@ function quicklookCommand(): Command {
       'where azimuth is zero, and which way it counts: +x, -x, +y, -y of the image or north, east, south, west on the sky, then ,cw or ,ccw (default: +y,ccw)',
       parseAzimuthZero,
     )
+    .addOption(
+      new Option(
+        '--disambiguation <way>',
+        'how the 180 degree ambiguity of the azimuth is resolved (default: minimum-energy)',
+      ).choices(['minimum-energy', 'acute']),
+    )
     .option('--center <lon,lat>', 'Stonyhurst position of the patch centre [deg]', positionArgument)
     .option('--extent <Mm>', 'side of the patch [Mm]', numberArgument('a length', 1, 3000))
     .option('--pixel <Mm>', 'pixel of the patch [Mm]', numberArgument('a length', 0.01, 100))

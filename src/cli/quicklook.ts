@@ -1,18 +1,15 @@
 import { basename, join } from 'node:path';
 import { UsageError } from '../errors.js';
-import type { MapAnalysis, MapAnalysisOptions } from '../figures/analyse-map.js';
-import type { SolarMap } from '../geometry/solar-map.js';
 import { numberText } from '../render/number-format.js';
-import type { QuickLookDocument } from '../report/document.js';
-import { quickLook } from '../report/quick-look.js';
 import { regionSummary } from '../report/summary.js';
 import { quickLookCsv } from '../report/table.js';
 import type { ComponentOptions } from './component-options.js';
 import { DONE, FAILED, PARTLY } from './exit-codes.js';
 import { faultLine } from './faults.js';
+import { type Look, lookAtMap, lookAtVector } from './look.js';
 import { makeOutputFolder, writeTogether } from './output.js';
 import { type PictureDrawer, startPictureDrawer } from './picture-drawer.js';
-import { type ReadingOptions, readingOptions } from './reading-options.js';
+import type { ReadingOptions } from './reading-options.js';
 
 /** Options of the command as commander gives them. */
 export interface QuickLookArguments extends ReadingOptions, ComponentOptions {
@@ -33,6 +30,7 @@ export interface QuickLookArguments extends ReadingOptions, ComponentOptions {
   readonly top?: number;
   readonly every?: number;
   readonly lines?: number;
+  readonly disambiguation?: 'minimum-energy' | 'acute';
   readonly picture: boolean;
   readonly debug?: boolean;
 }
@@ -59,92 +57,52 @@ function checkNames(files: readonly string[]): void {
   }
 }
 
-function analysisOptions(options: QuickLookArguments): MapAnalysisOptions {
-  return {
-    ...(options.center && { center: options.center }),
-    ...(options.extent !== undefined && { extentMm: options.extent }),
-    ...(options.pixel !== undefined && { pixelMm: options.pixel }),
-    ...(options.allowLimb && { allowLimb: true }),
-    ...(options.noise !== undefined && { noiseG: options.noise }),
-    ...(options.alpha !== undefined && { alphaPerMm: options.alpha }),
-    ...(options.regionId !== undefined && { id: options.regionId }),
-    sides: options.sides,
-    radialMethod: options.radial,
-  };
-}
-
-/** A file's results: what is printed and what is written. */
+/** A map's results: what is printed and what is written. */
 interface Results {
-  readonly document: QuickLookDocument;
-  readonly analysis: MapAnalysis;
+  readonly look: Look;
   readonly files: readonly { readonly path: string; readonly content: string | Uint8Array }[];
 }
 
-/** The viewing directions are not drawn: spare the second thread a copy of three maps. */
-const NOTHING = new Float64Array(0);
-const NOT_DRAWN = { x: NOTHING, y: NOTHING, z: NOTHING };
-
-async function work(
-  file: string,
+async function finish(
+  look: Look,
   options: QuickLookArguments,
   drawer: PictureDrawer | undefined,
 ): Promise<Results> {
-  const { document, map, analysis } = quickLook(file, {
-    reading: readingOptions(options),
-    analysis: analysisOptions(options),
-  });
-  const { version } = document.tool;
+  const { document, file } = look;
   const base = join(options.out, resultName(file));
   const files: { path: string; content: string | Uint8Array }[] = [
     { path: `${base}.json`, content: `${JSON.stringify(document, null, 2)}\n` },
     { path: `${base}.csv`, content: quickLookCsv(document) },
   ];
   if (drawer) {
-    const content = await drawer.draw({
-      source: basename(file),
-      observed: map.observed,
-      toolVersion: version,
-      region: analysis.figures,
-      patch: { ...analysis.patch, toObserver: NOT_DRAWN },
-      radialField: analysis.radialField,
-      currentDensity: analysis.currentDensity,
-      inversionLines: analysis.inversionLines,
-      ...(options.lines !== undefined && { fieldLines: await fieldLines(analysis, options) }),
-    });
-    files.push({ path: `${base}.png`, content });
+    const lines = options.lines !== undefined && { fieldLines: await fieldLines(look, options) };
+    files.push({ path: `${base}.png`, content: await drawer.draw({ ...look.picture, ...lines }) });
   }
-  if (options.maps) {
-    const { regionMaps } = await import('../report/maps.js');
-    files.push({ path: `${base}-maps.fits`, content: regionMaps(analysis, map, version) });
-  }
-  if (options.volume) {
-    const content = await volumeFile(analysis, map, version, options);
-    files.push({ path: `${base}-volume.fits`, content });
-  }
-  return { document, analysis, files };
+  if (options.maps) files.push({ path: `${base}-maps.fits`, content: await look.maps() });
+  if (options.volume)
+    files.push({ path: `${base}-volume.fits`, content: await volumeFile(look, options) });
+  return { look, files };
 }
 
-async function fieldLines(analysis: MapAnalysis, options: QuickLookArguments) {
+async function fieldLines({ surface }: Look, options: QuickLookArguments) {
   const { regionFieldLines } = await import('../figures/region-volume.js');
-  return regionFieldLines(analysis, options.lines ?? 0, options.alpha ?? 0);
+  return regionFieldLines(surface, options.lines ?? 0, options.alpha ?? 0);
 }
 
 async function volumeFile(
-  analysis: MapAnalysis,
-  map: SolarMap,
-  version: string,
+  { surface, map, document }: Look,
   options: QuickLookArguments,
 ): Promise<Uint8Array> {
   const { regionVolume } = await import('../figures/region-volume.js');
   const { volumeCube } = await import('../report/volume-cube.js');
   const { levels, top, every, alpha = 0 } = options;
-  const volume = regionVolume(analysis, {
+  const volume = regionVolume(surface, {
     ...(levels !== undefined && { levels }),
     ...(top !== undefined && { topMm: top }),
     ...(every !== undefined && { every }),
     alphaPerMm: alpha,
   });
-  return volumeCube(volume, alpha, analysis, map, version);
+  return volumeCube(volume, alpha, surface, map, document.tool.version);
 }
 
 /** Options that only mean something beside others. */
@@ -167,28 +125,38 @@ function checkVolumeOptions({
     throw new UsageError('--lines are drawn on the picture, which --no-picture leaves out');
 }
 
+/** Options that only mean something with or without components. */
+function checkVectorOptions({ component, disambiguation, alpha }: QuickLookArguments): void {
+  if (!component && disambiguation !== undefined)
+    throw new UsageError('--disambiguation is for vector maps, given by --component');
+  if (component && alpha !== undefined)
+    throw new UsageError('--alpha is for line-of-sight maps: a vector map measures it');
+}
+
 function useColour(): boolean {
   return process.stdout.isTTY === true && !process.env.NO_COLOR && process.env.TERM !== 'dumb';
 }
 
-function print({ document, analysis, files }: Results, file: string, json: boolean): void {
+function print({ look, files }: Results, json: boolean): void {
+  const { document, figures, noiseG, noiseBasis, file } = look;
   if (json) {
     process.stdout.write(`${JSON.stringify(document)}\n`);
     return;
   }
-  const basis = analysis.noiseBasis === 'measured' ? 'from quiet pixels' : 'given';
+  const basis = noiseBasis === 'measured' ? 'from quiet pixels' : 'given';
   const context = {
     source: basename(file),
     observed: document.source.observed,
-    noise: `${numberText(analysis.noiseG, 'G')} (${basis})`,
+    noise: `${numberText(noiseG, 'G')} (${basis})`,
     files: files.map(({ path }) => path),
   };
-  process.stdout.write(regionSummary(analysis.figures, context, useColour()));
+  process.stdout.write(regionSummary(figures, context, useColour()));
 }
 
 /**
- * The quick look of each file: results written whole or not at all, then printed; a fault takes one
- * line on stderr and never harms the other files. Gives the exit code.
+ * The quick look of each file, or of the one vector map that the components make: results written whole
+ * or not at all, then printed; a fault takes one line on stderr and never harms the other files. Gives
+ * the exit code.
  */
 export async function runQuickLook(
   files: readonly string[],
@@ -196,14 +164,19 @@ export async function runQuickLook(
 ): Promise<number> {
   checkNames(files);
   checkVolumeOptions(options);
+  checkVectorOptions(options);
+  const { component } = options;
+  const tasks = component
+    ? [{ file: component[0].file, look: () => lookAtVector(component, options) }]
+    : files.map((file) => ({ file, look: () => lookAtMap(file, options) }));
   const drawer = options.picture ? startPictureDrawer() : undefined;
   let failures = 0;
-  for (const file of files) {
+  for (const { file, look } of tasks) {
     try {
-      const results = await work(file, options, drawer);
+      const results = await finish(look(), options, drawer);
       makeOutputFolder(options.out);
       await writeTogether(results.files);
-      print(results, file, options.json === true);
+      print(results, options.json === true);
     } catch (error) {
       failures++;
       process.stderr.write(`${faultLine(error, file, options.debug === true)}\n`);
@@ -211,5 +184,5 @@ export async function runQuickLook(
   }
   await drawer?.close();
   if (failures === 0) return DONE;
-  return failures === files.length ? FAILED : PARTLY;
+  return failures === tasks.length ? FAILED : PARTLY;
 }

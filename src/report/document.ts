@@ -12,7 +12,8 @@ export interface Source {
 
 /** How the figures were worked out, where there is a choice. */
 export interface Settings {
-  readonly radial_field: 'potential' | 'mu' | 'given';
+  /** `vector`: from all three components. */
+  readonly radial_field: 'potential' | 'mu' | 'given' | 'vector';
   readonly sides: 'open' | 'periodic';
   readonly noise_G: number;
   readonly noise_basis: 'measured' | 'assumed';

@@ -1,6 +1,7 @@
-import type { MapAnalysis } from '../figures/analyse-map.js';
+import type { RegionFigures } from '../figures/region.js';
 import type { FieldVolume } from '../figures/region-volume.js';
 import { type Card, writeFits } from '../fits/index.js';
+import type { LocalPatch } from '../geometry/patch.js';
 import { patchWcsCards } from '../geometry/patch-wcs.js';
 import type { SolarMap } from '../geometry/solar-map.js';
 
@@ -15,6 +16,14 @@ function card(keyword: string, value: Card['value'], comment = ''): Card {
   return { keyword, value, comment };
 }
 
+/** The region that a volume stands on; `radialMethod` for one seen along the line of sight. */
+export interface VolumeRegion {
+  readonly figures: RegionFigures;
+  readonly patch: LocalPatch;
+  readonly sides: 'open' | 'periodic';
+  readonly radialMethod?: string;
+}
+
 /**
  * A volume as a FITS file of three cubes in G, float32: BX (primary HDU), BY and BZ. Axes 1 and 2 have the
  * world coordinates of the patch, axis 3 is the height in Mm, linear from the surface. Heights must be
@@ -23,7 +32,7 @@ function card(keyword: string, value: Card['value'], comment = ''): Card {
 export function volumeCube(
   volume: FieldVolume<Float32Array>,
   alphaPerMm: number,
-  analysis: MapAnalysis,
+  analysis: VolumeRegion,
   map: SolarMap,
   version: string,
 ): Uint8Array {
@@ -36,7 +45,9 @@ export function volumeCube(
     card('MODEL', alphaPerMm === 0 ? 'current-free' : 'linear force-free'),
     card('ALPHA', alphaPerMm, '[1/Mm] curl B = alpha B'),
     card('SIDES', analysis.sides, 'what lies beyond the patch'),
-    card('RADIAL', analysis.radialMethod, 'how the radial field was had'),
+    ...(analysis.radialMethod
+      ? [card('RADIAL', analysis.radialMethod, 'how the radial field was had')]
+      : []),
     card('CREATOR', `spotjoule ${version}`),
   ];
   return writeFits(
@@ -53,7 +64,7 @@ export function volumeCube(
 }
 
 /** The patch's cards for a grid that takes every n-th of its pixels. */
-function sampledWcs(volume: FieldVolume, cards: readonly Card[], { patch }: MapAnalysis): Card[] {
+function sampledWcs(volume: FieldVolume, cards: readonly Card[], { patch }: VolumeRegion): Card[] {
   const every = Math.round(volume.stepMm / patch.pixelMm);
   return cards.map((each) => {
     const value = Number(each.value);
