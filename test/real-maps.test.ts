@@ -3,9 +3,10 @@ import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { describe, expect, it } from 'vitest';
 import { readFitsFile } from '../src/fits/index.js';
+import { parseAzimuthZero } from '../src/geometry/azimuth-zero.js';
 import { mapPixelToStonyhurst, readSolarMap } from '../src/geometry/solar-map.js';
 import { estimateNoise } from '../src/grid/noise.js';
-import { quickLook } from '../src/report/quick-look.js';
+import { quickLook, vectorQuickLook } from '../src/report/quick-look.js';
 import { realData, spotjoule } from './support/command.js';
 
 const folder = realData();
@@ -121,4 +122,34 @@ describe.skipIf(!folder)('real magnetograms', () => {
       expect(general).toBeLessThan(25);
     }
   });
+
+  it.each(['0647_field-inc-azi_512x512', '1132_field-inc-azi_508x512'])(
+    'the vector map of 4 March 2011, %s, gives measured figures in published ranges',
+    (name) => {
+      const file = path(`vector/hinode_sotsp_20110304_${name}.fits`);
+      const sources = (['strength', 'inclination', 'azimuth'] as const).map((component, plane) => ({
+        name: component,
+        file,
+        plane,
+      }));
+      // The instrument's azimuth counts from the +x axis; half-arcsecond pixels keep the test short.
+      const reading = { azimuthZero: parseAzimuthZero('+x,ccw') };
+      const { document } = vectorQuickLook(sources, { reading, analysis: { pixelMm: 0.6 } });
+      const [{ quantities, center, flags, settings }] = document.regions;
+      const value = (key: keyof typeof quantities) => quantities[key]?.value ?? Number.NaN;
+      expect(Math.abs(center.stonyhurst_latitude - 26)).toBeLessThan(1.5);
+      expect(settings.radial_field).toBe('vector');
+      // Unsigned flux 1e21 to 1e23 Mx; alpha 1e-8 per metre and up to 1e-7 (from memory); free energy 1 to 25 %
+      // of the potential energy (Aschwanden, Xu & Jing 2014, ApJ 797, 50), doubled here for the proxy's error;
+      // vertical net force mostly within -0.5 to 0.5 of the pressure (Zhang & Zhang 2023, arXiv 2309.15407).
+      expect(value('unsigned_flux')).toBeLessThan(1e23);
+      expect(Math.abs(value('force_free_alpha'))).toBeLessThan(0.1);
+      expect(value('free_energy') / value('potential_energy')).toBeGreaterThan(0.005);
+      expect(value('free_energy') / value('potential_energy')).toBeLessThan(0.5);
+      expect(Math.abs(value('net_force_z'))).toBeLessThan(0.5);
+      expect(quantities.free_energy?.basis).toBe('measured');
+      expect(value('disambiguation_flux_fraction_changed')).toBeLessThan(0.3);
+      expect(flags.join()).toMatch(/180 degree ambiguity resolved by minimum energy/);
+    },
+  );
 });

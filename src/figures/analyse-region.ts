@@ -70,7 +70,7 @@ export function analyseRegion(patch: LocalPatch, options: AnalysisOptions): Regi
     potential_energy: energyQuantity('potential_energy', potential),
     free_energy_ceiling: energyQuantity('free_energy_ceiling', ceiling),
   };
-  const flags: string[] = fluxFlags(patch, quantities, method);
+  const flags: string[] = [...methodFlags(method), ...patchFlags(patch, quantities)];
 
   const linear = linearFreeEnergy(radial, noise);
   const belief = alphaBelief(options, patch, linear.largestAlphaPerMm);
@@ -160,11 +160,15 @@ function shownAlpha(belief: AlphaBelief): number {
   return Math.sign(beliefQuantile(belief.perMm, 0.5) || 1) * size;
 }
 
-function fluxFlags(patch: LocalPatch, quantities: Quantities, method: RadialMethod): string[] {
-  const flags: string[] = [];
+function methodFlags(method: RadialMethod): string[] {
   if (method === 'potential')
-    flags.push('radial field by potential reconstruction from the line of sight');
-  if (method === 'mu') flags.push('radial field by mu correction (line of sight over mu)');
+    return ['radial field by potential reconstruction from the line of sight'];
+  return method === 'mu' ? ['radial field by mu correction (line of sight over mu)'] : [];
+}
+
+/** What the reader must know of the patch itself: balance of flux, missing pixels. */
+export function patchFlags(patch: LocalPatch, quantities: Quantities): string[] {
+  const flags: string[] = [];
   const imbalance = quantities.flux_imbalance?.value ?? 0;
   if (Math.abs(imbalance) > 0.2)
     flags.push(

@@ -15,7 +15,7 @@ import type { VectorField, VectorNoise } from '../field/vector-field.js';
 import type { LocalPatch } from '../geometry/patch.js';
 import { type Grid2, makeGrid } from '../grid/grid.js';
 import type { Interval } from '../grid/interval.js';
-import { heliographicName } from './analyse-region.js';
+import { heliographicName, patchFlags } from './analyse-region.js';
 import { circuitQuantities } from './current-figures.js';
 import { fluxQuantities } from './flux-figures.js';
 import { lineQuantities } from './line-figures.js';
@@ -170,7 +170,6 @@ function missingFlags(quantities: Quantities): string[] {
     force_free_alpha: 'no horizontal field to fit',
     current_helicity_mean: 'no pixel of either polarity',
     shear_line_length: 'no inversion line',
-    flux_imbalance: 'no flux stands above the noise',
   };
   return (Object.entries(reasons) as [QuantityKey, string][])
     .filter(([key]) => quantities[key]?.value === null)
@@ -255,6 +254,7 @@ export function analyseVector(
       quantities,
       flags: [
         ...input.flags,
+        ...patchFlags(patch, quantities),
         ...estimateFlags(adopted, virial, linear, excess),
         alphaFlag(currents),
         ...circuit.flags,
