@@ -1,5 +1,5 @@
 /** Up to this offset the closed form is used; beyond it the expansion is good to 1e-6. */
-const CLOSED_FORM_REACH = 8;
+export const CLOSED_FORM_REACH = 8;
 
 /** Fourth antiderivative (twice in x, twice in y) of 1 / sqrt(x^2 + y^2). */
 function antiderivative(x: number, y: number): number {

@@ -2,6 +2,7 @@ import { paddedSpectrum, type Sides } from '../field/potential.js';
 import type { Spectrum2 } from '../grid/fft.js';
 import { type Grid2, makeGrid } from '../grid/grid.js';
 import { blockMean } from '../grid/rebin.js';
+import { openEnergy } from './open-energy.js';
 import {
   type Energy,
   evaluateForm,
@@ -24,15 +25,17 @@ function knownPixels(field: Grid2<'G'>): number {
 
 /**
  * Energy of the current-free field above a patch [J], with nothing (open) or the patch repeated
- * (periodic, mean field left out) beyond its sides. `spectrum` is the map's padded spectrum, where the
+ * (periodic, mean field left out) beyond its sides. `given` is the map's padded spectrum, where the
  * caller has it already.
  */
 export function potentialEnergy(
   radial: Grid2<'G'>,
   noise: FieldNoise,
   sides: Sides,
-  spectrum: Spectrum2 = paddedSpectrum(radial, sides),
+  given?: Spectrum2,
 ): Energy {
+  if (sides === 'open' && !given) return openEnergy(radial, knownPixels(radial), noise);
+  const spectrum = given ?? paddedSpectrum(radial, sides);
   const { nx, ny } = spectrum;
   const form =
     sides === 'open' ? openForm(nx, ny, radial.pixelMm) : periodicForm(nx, ny, radial.pixelMm, 0);
@@ -58,9 +61,7 @@ export function freeEnergyCeiling(radial: Grid2<'G'>, noise: FieldNoise): Energy
       if (Math.abs(data[i]) >= least) signal[i] = change(data[i]);
     const blocks = blockMean(signal, nx, ny, factor);
     const field = makeGrid(blocks.values, blocks.nx, blocks.ny, 'G', factor * radial.pixelMm);
-    const spectrum = paddedSpectrum(field, 'open');
-    const form = openForm(spectrum.nx, spectrum.ny, field.pixelMm);
-    return evaluateForm(spectrum, form, field.pixelMm, 0, noise);
+    return openEnergy(field, 0, noise);
   };
   const closed = evaluate((b) => b);
   const open = evaluate(Math.abs);

@@ -32,11 +32,13 @@ export interface Energy {
  * over both pixels (exact for a map that is constant in each pixel). Needs px >= 2 nx, py >= 2 ny.
  */
 export function openForm(px: number, py: number, pixelMm: number): EnergyForm {
+  return { gain: inverseDistanceSpectrum(px, py), factorJ: openFactor(px, py, pixelMm) };
+}
+
+/** The units of an open form for B_k in G. */
+export function openFactor(px: number, py: number, pixelMm: number): number {
   const h = pixelMm * METRES_PER_MEGAMETRE;
-  return {
-    gain: inverseDistanceSpectrum(px, py),
-    factorJ: (h ** 3 * TESLA_PER_GAUSS ** 2) / (4 * Math.PI * VACUUM_PERMEABILITY * px * py),
-  };
+  return (h ** 3 * TESLA_PER_GAUSS ** 2) / (4 * Math.PI * VACUUM_PERMEABILITY * px * py);
 }
 
 /** The last kernel made: one region asks for the same one several times. */
@@ -128,6 +130,25 @@ export function evaluateForm(
       trace += weight * gain[i];
     }
   }
+  return energyOfSums({ energy, slope, trace }, form.factorJ, nx * ny, pixelMm, pixels, noise);
+}
+
+/** Over all modes of a form: sum of gain |B_k|^2, of gain^2 |B_k|^2 and of gain. */
+export interface FormSums {
+  readonly energy: number;
+  readonly slope: number;
+  readonly trace: number;
+}
+
+/** The energy with its noise taken out and its error, from the sums over `modes` modes. */
+export function energyOfSums(
+  { energy, slope, trace }: FormSums,
+  factorJ: number,
+  modes: number,
+  pixelMm: number,
+  pixels: number,
+  noise: FieldNoise,
+): Energy {
   const pixelMm2 = pixelMm * pixelMm;
   const ratio = noise.cellMm2 / pixelMm2;
   const variance = noise.deviationG ** 2;
@@ -135,7 +156,7 @@ export function evaluateForm(
   // average out within a pixel, so that the variance falls as their area.
   const ownEnergy = variance * pixels * trace * (ratio > 1 ? Math.sqrt(ratio) : ratio);
   return {
-    joules: form.factorJ * (energy - ownEnergy),
-    sigma: 2 * form.factorJ * Math.sqrt(nx * ny * variance * ratio * Math.max(0, slope)),
+    joules: factorJ * (energy - ownEnergy),
+    sigma: 2 * factorJ * Math.sqrt(modes * variance * ratio * Math.max(0, slope)),
   };
 }

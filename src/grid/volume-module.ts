@@ -3,10 +3,12 @@
 import { readFileSync } from 'node:fs';
 import { transformKernel } from './fft.js';
 
-/** What the module exports; see src/grid/kernel/volume-level.ts. */
+/** What the module exports; see volume-level.ts and open-sums.ts in src/grid/kernel. */
 export interface VolumeExports {
   readonly runLevel32: (job: number, level: number, scratch: number) => void;
   readonly runLevel64: (job: number, level: number, scratch: number) => void;
+  readonly openGain: (job: number) => void;
+  readonly openSums: (job: number) => void;
 }
 
 /** Beside this file once built; below dist when the sources run as they are (tests). */

@@ -10,6 +10,8 @@ export type Precision = 'single' | 'double';
 export interface PlanWriter {
   /** The address of the plan for `points` points and frequencies up to `band`. */
   readonly plan: (points: number, band: number) => number;
+  /** The address of a plan for `points` points, of which only the first `given` are not zero. */
+  readonly padded: (points: number, given: number) => number;
   /** The plans' bytes, for the address given when the writer was made. */
   readonly bytes: () => Uint8Array;
 }
@@ -41,10 +43,10 @@ export function planWriter(base: number, precision: Precision): PlanWriter {
   };
   const factors = (values: Float64Array) =>
     append(numberBytes === 4 ? Float32Array.from(values) : values);
-  const plan = (points: number, band: number): number => {
-    const m = bandLength(points, band);
+  const plan = (points: number, m: number, band: number, signed: boolean): number => {
     const r = points / m;
-    const spread = r === 1 ? 0 : once(`spread ${m} ${r}`, () => factors(spreadFactors(m, r)));
+    const make = () => factors(spreadFactors(m, r, signed));
+    const spread = r === 1 ? 0 : once(`spread ${m} ${r} ${signed}`, make);
     const passes: number[] = [];
     let rest = m;
     let s = r;
@@ -59,7 +61,13 @@ export function planWriter(base: number, precision: Precision): PlanWriter {
     return append(Uint32Array.of(m, r, band, spread, radices.length, ...passes));
   };
   return {
-    plan: (points, band) => once(`plan ${points} ${band}`, () => plan(points, band)),
+    plan: (points, band) =>
+      once(`plan ${points} ${band}`, () => plan(points, bandLength(points, band), band, true)),
+    padded: (points, given) => {
+      const m = points % 2 === 0 && points >= 2 * given ? points / 2 : points;
+      // Zero padding is the same spread with all m numbers at frequencies 0 .. m - 1.
+      return once(`padded ${points} ${m}`, () => plan(points, m, m, false));
+    },
     bytes: () => {
       const bytes = new Uint8Array(size);
       for (const part of parts) bytes.set(part.bytes, part.at);
@@ -82,11 +90,11 @@ function radicesOf(m: number): number[] {
   return radices;
 }
 
-/** exp(2 pi i f(p) v / (m r)) for p < m, v < r, with f(p) = p or p - m. */
-function spreadFactors(m: number, r: number): Float64Array {
+/** exp(2 pi i f(p) v / (m r)) for p < m, v < r, with f(p) = p or, from the middle on if signed, p - m. */
+function spreadFactors(m: number, r: number, signed: boolean): Float64Array {
   const out = new Float64Array(2 * m * r);
   for (let p = 0; p < m; p++) {
-    const frequency = 2 * p < m ? p : p - m + m * r;
+    const frequency = signed && 2 * p >= m ? p - m + m * r : p;
     for (let v = 0; v < r; v++) setRoot(out, 2 * (p * r + v), frequency * v, m * r);
   }
   return out;

@@ -32,7 +32,7 @@ for (;;) {
 export interface SharedJob {
   readonly module: WebAssembly.Module;
   readonly memory: WebAssembly.Memory;
-  readonly name: keyof VolumeExports;
+  readonly name: 'runLevel32' | 'runLevel64';
   readonly job: number;
   readonly levels: number;
   readonly scratch: readonly number[];

@@ -56,7 +56,7 @@ describe('energy by height', () => {
       const map = randomMap(40, 32, 0.5);
       const heights = geometricHeights(260, 300, 0.002);
       const found = potentialEnergyByHeight(map, QUIET, sides, heights);
-      expect(found.total.joules).toBe(potentialEnergy(map, QUIET, sides).joules);
+      expect(found.total.joules / potentialEnergy(map, QUIET, sides).joules).toBeCloseTo(1, 11);
       expect(integralError(found)).toBeLessThan(5e-4);
       expect(found.below[0].joules).toBe(0);
       expect(found.below.at(-1)!.joules / found.total.joules).toBeCloseTo(1, 3);
@@ -73,7 +73,8 @@ describe('energy by height', () => {
     expect(found.total.joules / surface.at(alpha).joules).toBeCloseTo(1, 12);
     expect(integralError(found)).toBeLessThan(5e-4);
     expect(found.below.at(-1)!.joules / found.total.joules).toBeCloseTo(1, 4);
-    for (const each of found.density) expect(each.joules).toBeGreaterThan(-1e-12 * found.total.joules);
+    for (const each of found.density)
+      expect(each.joules).toBeGreaterThan(-1e-12 * found.total.joules);
     expect(() => freeEnergyByHeight(map, QUIET, 1, heights)).toThrow(RangeError);
   });
 
