@@ -16,12 +16,12 @@ export interface ScaleHues {
 
 /**
  * Pairs of hues told apart under all common kinds of colour blindness: blue and brown for the field,
- * green and purple for the current, indigo and olive for alpha.
+ * green and purple for the current, indigo and ochre for alpha.
  */
 export const SCALE_HUES: Readonly<Record<ScaleName, ScaleHues>> = {
   field: { negativeDeg: 252, positiveDeg: 50, chromaShare: 1 },
   current: { negativeDeg: 140, positiveDeg: 315, chromaShare: 1 },
-  alpha: { negativeDeg: 278, positiveDeg: 98, chromaShare: 0.78 },
+  alpha: { negativeDeg: 280, positiveDeg: 86, chromaShare: 0.8 },
 };
 
 const ZERO_LIGHTNESS = 0.965;

@@ -9,7 +9,7 @@ export const CURRENT_DEVIATIONS = 3;
 
 const CURRENT_QUANTILE = 0.995;
 /** Where the field is weak a few pixels have an alpha far beyond all others. */
-const ALPHA_QUANTILE = 0.98;
+const ALPHA_QUANTILE = 0.95;
 
 /** Limit of a colour scale and the share of the live pixels within it. */
 interface LiveLimit {
@@ -79,7 +79,7 @@ export function currentLimit(vector: VectorMaps): LiveLimit {
   return liveLimit(liveCurrent(vector), CURRENT_QUANTILE, noise);
 }
 
-/** Symmetric limit [1/Mm]: a round number at or above the 98 % quantile of alpha where there is one. */
+/** Symmetric limit [1/Mm]: a round number at or above the 95 % quantile of alpha where there is one. */
 export function alphaLimit(vector: VectorMaps, radial: Grid2<'G'>): LiveLimit {
   return liveLimit(liveAlpha(vector, radial), ALPHA_QUANTILE, 0.01);
 }

@@ -52,7 +52,7 @@ function currentEntries(picture: RegionPicture, content: MapContent): readonly L
   }
   const basis = picture.region.quantities.peak_current_density?.basis;
   const supposed = !picture.vector && basis !== undefined && isSupposed(basis);
-  const note = picture.vector ? ', measured' : supposed ? `, ${basis}` : '';
+  const note = picture.vector ? ', measured, smoothed' : supposed ? `, ${basis}` : '';
   const unit = unitText('mA/m^2');
   const list = (sign: string) => levels.map((level) => sign + plainNumber(level)).join(', ');
   return [
@@ -86,7 +86,7 @@ function tickEntries({ ticks }: MapContent): readonly LegendEntry[] {
   const least = numberText(leastG, 'G', 2);
   if (ticks.ticks.length === 0)
     return [entry('none', `No horizontal field above noise (${least})`)];
-  const short = shortestG > leastG ? `, shortest up to ${numberText(shortestG, 'G', 2)}` : '';
+  const short = shortestG > leastG ? `, equally short up to ${numberText(shortestG, 'G', 2)}` : '';
   const text = `Horizontal field ${plainNumber(referenceG)} G; drawn from ${least}${short}`;
   return [{ sample: 'tick', text, supposed: false, tickPx: referencePx }];
 }

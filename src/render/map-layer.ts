@@ -11,7 +11,7 @@ export const LIMIT_QUANTILE = 0.995;
 const LEAST_LIMIT_GAUSS = 50;
 
 /** Level of grey of a dead zone: darker than the middle of the scales, which is near white. */
-export const DEAD_GREY = 224;
+export const DEAD_GREY = 218;
 
 /** Raw sRGB pixels of the whole picture, row 0 at the top. */
 export interface Raster {

@@ -1,5 +1,4 @@
 import { COLOUR_BAR_SIDE } from './colour-bar.js';
-import type { Rect } from './drawing.js';
 import {
   AXIS_LEFT,
   AXIS_RIGHT,
@@ -74,22 +73,8 @@ function arrangeGrid(needs: LayoutNeeds): Layout {
 
 /** Three maps one below the other, each with its colour bar at the right; legend below, then the table. */
 function arrangeStack(needs: LayoutNeeds): Layout {
-  const size = mapSize(needs.nx, needs.ny, 840, 300);
-  const { width, field, panels } = placeStack(needs, size);
-  const { x, y } = field.colourBar;
-  const top = box(x, field.map.y, SIDE_BAR_WIDTH, field.colourBar.height);
-  const legendWidth = SIDE_BAR_WIDTH - COLOUR_BAR_SIDE;
-  const legend = box(
-    x + COLOUR_BAR_SIDE,
-    bottom(top) + GAP,
-    legendWidth,
-    needs.legendHeight(legendWidth),
-  );
-  // Beside a map tall enough the legend fits below the colour bar.
-  if (bottom(legend) > bottom(field.longitudes) || y < top.y) {
-    return besideTable(needs, width, field, panels);
-  }
-  return besideTable(needs, width, { ...field, colourBar: top }, panels, legend);
+  const { width, field, panels } = placeStack(needs, mapSize(needs.nx, needs.ny, 840, 300));
+  return besideTable(needs, width, field, panels);
 }
 
 /** As a stack, with both halves of the table, legend and flags in columns below. */
@@ -168,15 +153,13 @@ function besideTable(
   width: number,
   field: Panel,
   panels: readonly PanelPlaces[],
-  legendBeside?: Rect,
 ): Layout {
   const x = MARGIN + AXIS_LEFT;
   const inner = width - AXIS_LEFT;
-  const y = lowestOf(panels[1]) + GAP;
-  const legend = legendBeside ?? box(x, y, inner, needs.legendHeight(inner));
+  const legend = box(x, lowestOf(panels[1]) + GAP, inner, needs.legendHeight(inner));
   const sideX = MARGIN + width + COLUMN_GAP;
   const side = placeSide(sideX, TOP, needs);
-  const below = box(x, Math.max(y, bottom(legend) + GAP), inner, needs.flagsHeight(inner));
+  const below = box(x, bottom(legend) + GAP, inner, needs.flagsHeight(inner));
   const flags =
     Math.max(bottom(below), bottom(side.note)) < bottom(side.flags) ? below : side.flags;
   const total = sideX + needs.tableWidth + MARGIN;

@@ -16,14 +16,18 @@ import {
   colourIndex,
   divergingScale,
   oneSide,
+  SCALE_HUES,
+  type ScaleName,
 } from '../../src/render/colour-scale.js';
+import { DEAD_GREY } from '../../src/render/map-layer.js';
 import { inGamut, oklchToSrgb } from '../../src/render/oklab.js';
 import { BODY_PRIOR, BODY_QUIET, SMALL_QUIET, ZEBRA_INK } from '../../src/render/style.js';
 
 const HALF = (COLOUR_COUNT - 1) / 2;
-const bytes = divergingScale();
+const NAMES = Object.keys(SCALE_HUES) as readonly ScaleName[];
 
-function colour(index: number): Rgb {
+function scaleColour(index: number, name: ScaleName): Rgb {
+  const bytes = divergingScale(name);
   const [r, g, b] = bytes.subarray(3 * index, 3 * index + 3);
   return { mode: 'rgb', r: r / 255, g: g / 255, b: b / 255 };
 }
@@ -46,11 +50,17 @@ describe('OKLCh to sRGB', () => {
   });
 });
 
-describe('diverging scale', () => {
+describe.each(NAMES)('diverging scale of the %s map', (name) => {
+  const colour = (index: number) => scaleColour(index, name);
+
   it('lies in the sRGB gamut before rounding, so nothing is clipped', () => {
+    const { negativeDeg, positiveDeg, chromaShare } = SCALE_HUES[name];
     for (let i = 0; i <= 200; i++) {
-      for (const hueDeg of [252, 50]) {
-        expect(inGamut(oklchToSrgb({ ...oneSide(i / 200), hueDeg })), `${hueDeg} ${i}`).toBe(true);
+      for (const hueDeg of [negativeDeg, positiveDeg]) {
+        expect(
+          inGamut(oklchToSrgb({ ...oneSide(i / 200, chromaShare), hueDeg })),
+          `${hueDeg} ${i}`,
+        ).toBe(true);
       }
     }
   });
@@ -109,16 +119,43 @@ describe('diverging scale', () => {
       expect(difference(minus, plus), `at ${share}`).toBeGreaterThan(least);
     }
   });
+});
 
-  it('has symmetric limits and ends for what lies beyond', () => {
-    expect(colourIndex(0, 300)).toBe(HALF);
-    expect(colourIndex(300, 300)).toBe(COLOUR_COUNT - 1);
-    expect(colourIndex(-300, 300)).toBe(0);
-    expect(colourIndex(9e9, 300)).toBe(COLOUR_COUNT - 1);
-    for (const value of [12, 77, 210]) {
-      expect(colourIndex(value, 300) - HALF).toBe(HALF - colourIndex(-value, 300));
+it('has symmetric limits and ends for what lies beyond', () => {
+  expect(colourIndex(0, 300)).toBe(HALF);
+  expect(colourIndex(300, 300)).toBe(COLOUR_COUNT - 1);
+  expect(colourIndex(-300, 300)).toBe(0);
+  expect(colourIndex(9e9, 300)).toBe(COLOUR_COUNT - 1);
+  for (const value of [12, 77, 210]) {
+    expect(colourIndex(value, 300) - HALF).toBe(HALF - colourIndex(-value, 300));
+  }
+});
+
+it('has scales whose strong colours are told from one another', () => {
+  const difference = differenceCiede2000();
+  NAMES.forEach((name, i) => {
+    for (const other of NAMES.slice(i + 1)) {
+      for (const share of [-0.6, 0.6]) {
+        for (const otherShare of [-0.6, 0.6]) {
+          const pair = [
+            scaleColour(colourIndex(share, 1), name),
+            scaleColour(colourIndex(otherShare, 1), other),
+          ];
+          expect(difference(pair[0], pair[1]), `${name} ${other}`).toBeGreaterThan(10);
+        }
+      }
     }
   });
+});
+
+it('keeps the grey of dead zones apart from the middle and the weak colours of every scale', () => {
+  const difference = differenceCiede2000();
+  const grey: Rgb = { mode: 'rgb', r: DEAD_GREY / 255, g: DEAD_GREY / 255, b: DEAD_GREY / 255 };
+  for (const name of NAMES) {
+    for (let index = 0; index < COLOUR_COUNT; index++) {
+      expect(difference(grey, scaleColour(index, name)), `${name} ${index}`).toBeGreaterThan(4);
+    }
+  }
 });
 
 it('writes text with the contrast WCAG 2 asks of body text, 4.5 : 1', () => {

@@ -2,7 +2,6 @@ import { execFileSync } from 'node:child_process';
 import { mkdtempSync, readFileSync, rmSync } from 'node:fs';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
-import sharp from 'sharp';
 import { build } from 'vite';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { makeGrid } from '../../src/grid/grid.js';
@@ -11,34 +10,11 @@ import { composePicture } from '../../src/render/compose.js';
 import { type Rect, shapesSvg, textSvg } from '../../src/render/drawing.js';
 import { fieldLimit } from '../../src/render/map-layer.js';
 import { type RegionPicture, renderRegionPicture } from '../../src/render/region-picture.js';
+import { blockPlaces, commonColour, type Decoded, draw } from './decoded.js';
 import { BIPOLE_SPOTS, barePicture, filledPicture } from './sample-patch.js';
 import { samplePicture } from './sample-picture.js';
 
 const root = fileURLToPath(new URL('../..', import.meta.url));
-
-interface Decoded {
-  readonly width: number;
-  readonly height: number;
-  readonly at: (x: number, y: number) => readonly [number, number, number];
-}
-
-async function decode(png: Uint8Array): Promise<Decoded> {
-  const { data, info } = await sharp(png).raw().toBuffer({ resolveWithObject: true });
-  expect(info.channels).toBe(3);
-  return {
-    width: info.width,
-    height: info.height,
-    at: (x, y) => {
-      const from = 3 * (Math.round(x) + info.width * Math.round(y));
-      return [data[from], data[from + 1], data[from + 2]];
-    },
-  };
-}
-
-async function draw(picture: RegionPicture) {
-  const { layout, content, drawing } = composePicture(picture);
-  return { layout, content, drawing, image: await decode(await renderRegionPicture(picture)) };
-}
 
 function scaleColour(value: number, limit: number): readonly number[] {
   const index = colourIndex(value, limit);
@@ -65,32 +41,6 @@ function blockPicture(rows: readonly (readonly number[])[], change: Partial<Regi
   );
   const bare = barePicture({ nx, ny, spots: [], widthMm: 100 });
   return { ...bare, radialField: makeGrid(data, nx, ny, 'G', 100 / nx), ...change };
-}
-
-/** Centre of block (column, row from the south) in the picture, off any grid line or sign. */
-function blockPlaces({ map }: { readonly map: Rect }, columns: number, rows: number) {
-  return (column: number, row: number) => {
-    const [w, h] = [map.width / columns, map.height / rows];
-    const places: [number, number][] = [];
-    for (const u of [0.23, 0.37, 0.71]) {
-      for (const v of [0.29, 0.41, 0.77]) {
-        places.push([map.x + w * (column + u), map.y + map.height - h * (row + v)]);
-      }
-    }
-    return places;
-  };
-}
-
-/** The colour most of the places have, so that a grid line through one of them does no harm. */
-function commonColour(image: Decoded, places: readonly (readonly [number, number])[]) {
-  const seen = new Map<string, number>();
-  for (const [x, y] of places) {
-    const key = image.at(x, y).join();
-    seen.set(key, (seen.get(key) ?? 0) + 1);
-  }
-  const [colour, count] = [...seen].sort((a, b) => b[1] - a[1])[0];
-  expect(count).toBeGreaterThanOrEqual(5);
-  return colour.split(',').map(Number);
 }
 
 describe('the map', () => {
