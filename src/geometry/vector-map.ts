@@ -114,14 +114,12 @@ function readComponents(
   // Of three HDUs often one alone has the coordinates.
   const isPlaced = ({ header, nx, ny }: ComponentImage) =>
     readPlacement(header, nx, ny, options).missing.length === 0;
-  const { file, source } = fields.find(isPlaced) ?? fields[0];
-  const placed = placeMap(file, source.hdu, options);
+  const carrier = fields.find(isPlaced) ?? fields[0];
+  const placed = placeMap(carrier.file, carrier.source.hdu, options);
   const flags = [...placed.warnings];
   const all = [...fields, ...(errors ?? []), ...(ambiguity ? [ambiguity] : [])];
-  for (const image of all) {
-    const first = fields.find(isPlaced) ?? fields[0];
-    flags.push(...image.warnings, ...checkSamePlace(first, placed, image, options));
-  }
+  for (const image of all)
+    flags.push(...image.warnings, ...checkSamePlace(carrier, placed, image, options));
   return { fields, ...(errors && { errors }), ...(ambiguity && { ambiguity }), placed, flags };
 }
 
