@@ -1,11 +1,14 @@
 import type { ColourBarFacts } from './colour-bar.js';
-import { alphaLimit, currentLimit } from './dead-zone.js';
 import { fieldLimit, LIMIT_QUANTILE } from './map-layer.js';
 import { plainNumber, unitText } from './number-format.js';
 import type { RegionPicture } from './region-picture.js';
+import type { LiveMaps } from './vector-panels.js';
 
 /** What the colour bars say: that of the field and, with a vector map, of the current and of alpha. */
-export function barFacts(picture: RegionPicture): readonly [ColourBarFacts, ...ColourBarFacts[]] {
+export function barFacts(
+  picture: RegionPicture,
+  live: LiveMaps | undefined,
+): readonly [ColourBarFacts, ...ColourBarFacts[]] {
   const field: ColourBarFacts = {
     scale: 'field',
     title: 'Radial field (G)',
@@ -13,10 +16,8 @@ export function barFacts(picture: RegionPicture): readonly [ColourBarFacts, ...C
     positive: 'outward +',
     ...limitFacts(fieldLimit(picture.radialField), 'G', LIMIT_QUANTILE, 'the pixels'),
   };
-  const { vector } = picture;
-  if (!vector) return [field];
-  const current = currentLimit(vector);
-  const alpha = alphaLimit(vector, picture.radialField);
+  if (!live) return [field];
+  const { current, alpha } = live;
   return [
     field,
     {
@@ -24,14 +25,14 @@ export function barFacts(picture: RegionPicture): readonly [ColourBarFacts, ...C
       title: `Vertical current density (${unitText('mA/m^2')})`,
       negative: '− down',
       positive: 'up +',
-      ...limitFacts(current.limit, 'mA/m^2', current.share, 'the pixels above noise'),
+      ...limitFacts(current.limit, 'mA/m^2', current.share, 'what is above noise'),
     },
     {
       scale: 'alpha',
       title: `Alpha (${unitText('1/Mm')})`,
       negative: '− left-handed',
       positive: 'right-handed +',
-      ...limitFacts(alpha.limit, '1/Mm', alpha.share, 'the pixels not grey'),
+      ...limitFacts(alpha.limit, '1/Mm', alpha.share, 'what is not grey'),
     },
   ];
 }

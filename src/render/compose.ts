@@ -14,7 +14,13 @@ import type { RegionPicture } from './region-picture.js';
 import { drawMarks, marksWidth } from './scale-marks.js';
 import { HEADING } from './style.js';
 import { arrangeVector } from './vector-layout.js';
-import { drawPanel, PANEL_HEADINGS, type PanelContent, panelContents } from './vector-panels.js';
+import {
+  drawPanel,
+  liveMaps,
+  type PanelContent,
+  panelContents,
+  panelHeadings,
+} from './vector-panels.js';
 
 /** A picture before encoding, with the places of its parts for checks. */
 export interface ComposedPicture {
@@ -28,7 +34,7 @@ export interface ComposedPicture {
 }
 
 /** Fewer flags beside the taller table of a vector map. */
-const MOST_VECTOR_FLAG_LINES = 18;
+const MOST_VECTOR_FLAG_LINES = 20;
 const HEADING_GAP = 24;
 
 /** Lays out and draws the picture of one region; pure, apart from reading the font once. */
@@ -37,14 +43,18 @@ export function composePicture(picture: RegionPicture): ComposedPicture {
   const rows = tableRows(region);
   const columns = tableColumns(rows);
   const halves = splitRows(rows);
-  const bars = barFacts(picture);
+  const live = liveMaps(picture);
+  const bars = barFacts(picture, live);
   const mapWidthMm = patch.nx * patch.pixelMm;
-  const headingWidth = vector ? styledWidth(PANEL_HEADINGS[0], HEADING) + HEADING_GAP : 0;
+  const headings = panelHeadings(live);
+  const widths = headings.map((heading) => styledWidth(heading, HEADING));
+  const headingWidth = live ? widths[0] + HEADING_GAP : 0;
   const flags = (width: number) => flagLines(region.flags, width, vector && MOST_VECTOR_FLAG_LINES);
   const needs: LayoutNeeds = {
     nx: patch.nx,
     ny: patch.ny,
-    marksWidth: (mapWidthPx) => headingWidth + marksWidth(mapWidthMm, mapWidthPx),
+    marksWidth: (mapWidthPx) =>
+      Math.max(headingWidth + marksWidth(mapWidthMm, mapWidthPx), ...widths),
     colourBarHeight: (width) => Math.max(...bars.map((bar) => colourBarHeight(width, bar))),
     legendHeight: () => 0,
     tableWidth: columns.width,
@@ -58,15 +68,15 @@ export function composePicture(picture: RegionPicture): ComposedPicture {
   const first = place(needs);
   const content = mapContent(picture, { ...first.map, nx: patch.nx, ny: patch.ny });
   const maps = first.panels.map(({ map }) => map);
-  const panels = vector ? panelContents(picture, vector, bars, maps) : [];
-  const entries = legendEntries(picture, content, panels);
+  const panels = live ? panelContents(picture, live, maps) : [];
+  const entries = legendEntries(picture, content, panels, live);
   const layout = place({ ...needs, legendHeight: (width) => legendHeight(entries, width) });
   const canvas: Canvas = { drawing: newDrawing(), paints: [] };
   drawMap(canvas, picture, content);
   panels.forEach((panel, i) => {
     drawPanel(canvas, picture, panel, layout.panels[i].marks);
   });
-  drawFieldStrip(canvas.drawing, picture, layout, headingWidth);
+  drawFieldStrip(canvas.drawing, picture, layout, headings[0] ?? '', headingWidth);
   [layout, ...layout.panels].forEach(({ colourBar }, i) => {
     drawColourBar(canvas, colourBar, bars[i]);
   });
@@ -90,13 +100,12 @@ export function composePicture(picture: RegionPicture): ComposedPicture {
 /** Scale bar and compass above the field, after its heading where there are other panels. */
 function drawFieldStrip(
   drawing: Drawing,
-  { patch, vector }: RegionPicture,
+  { patch }: RegionPicture,
   { marks, map }: Layout,
+  heading: string,
   headingWidth: number,
 ): void {
-  if (vector) {
-    drawText(drawing, PANEL_HEADINGS[0], marks.x, marks.y + marks.height - 8, HEADING);
-  }
+  drawText(drawing, heading, marks.x, marks.y + marks.height - 8, HEADING);
   const strip: Rect = { ...marks, x: marks.x + headingWidth, width: marks.width - headingWidth };
   drawMarks(drawing, strip, patch.nx * patch.pixelMm, map.width);
 }

@@ -27,6 +27,11 @@ export function inversionPaths(lines: readonly InversionLine[], frame: MapFrame)
   return { plain: longest(plain), strong: longest(strong) };
 }
 
+/** Leaves out strong parts too short to be told from the strokes of the horizontal field. */
+export function withoutSpecks({ plain, strong }: InversionPaths): InversionPaths {
+  return { plain, strong: strong.filter((line) => lineLength(line) >= LEAST_LENGTH_PX) };
+}
+
 /** First and last point of each run of strong segments. */
 function strongRuns(strong: readonly boolean[], points: number): readonly [number, number][] {
   const runs: [number, number][] = [];

@@ -3,16 +3,16 @@ import { CURRENT_DEVIATIONS } from './dead-zone.js';
 import { isSupposed } from './figures-table.js';
 import type { LegendColumns, LegendEntry } from './legend.js';
 import type { MapContent } from './map-panel.js';
-import { quantileOfSize } from './nice-number.js';
 import { numberText, plainNumber, unitText } from './number-format.js';
 import type { RegionPicture } from './region-picture.js';
-import type { PanelContent } from './vector-panels.js';
+import type { LiveMaps, PanelContent } from './vector-panels.js';
 
 /** What the legend must explain for this map: only what is drawn, and what is missing. */
 export function legendEntries(
   picture: RegionPicture,
   content: MapContent,
   panels: readonly PanelContent[],
+  live: LiveMaps | undefined,
 ): LegendColumns {
   const hasMissing = content.hasMissing || panels.some((panel) => panel.hasMissing);
   const step = plainNumber(gridStepDeg(picture.patch, content.frame));
@@ -26,19 +26,19 @@ export function legendEntries(
     [
       ...(content.poles.length > 0 ? [entry('poles', 'Strongest field, both signs')] : []),
       ...(hasMissing ? [entry('hatch', 'No data, or beyond the limb')] : []),
-      ...deadEntries(picture),
+      ...deadEntries(picture, live),
       entry('grid', `Stonyhurst grid, every ${step}°`),
     ],
   ];
 }
 
-function inversionEntries({ inversion }: MapContent): readonly LegendEntry[] {
+function inversionEntries({ inversion, ticks }: MapContent): readonly LegendEntry[] {
   if (inversion.plain.length + inversion.strong.length === 0) {
     return [entry('none', 'No polarity inversion line found')];
   }
   const line = entry('line', 'Polarity inversion line');
   if (inversion.strong.length === 0) return [line, entry('none', 'No strong-gradient part')];
-  return [line, entry('strong', 'Strong-gradient part of the line')];
+  return [line, entry(ticks ? 'slim' : 'strong', 'Strong-gradient part of the line')];
 }
 
 function currentEntries(picture: RegionPicture, content: MapContent): readonly LegendEntry[] {
@@ -92,10 +92,12 @@ function tickEntries({ ticks }: MapContent): readonly LegendEntry[] {
 }
 
 /** What the grey of the current and alpha panels means. */
-function deadEntries({ vector }: RegionPicture): readonly LegendEntry[] {
-  if (!vector) return [];
-  const noise = quantileOfSize(vector.currentNoise.values.data, 0.5);
-  const current = numberText(CURRENT_DEVIATIONS * noise, 'mA/m^2', 2);
+function deadEntries(
+  { vector }: RegionPicture,
+  live: LiveMaps | undefined,
+): readonly LegendEntry[] {
+  if (!vector || !live) return [];
+  const current = numberText(CURRENT_DEVIATIONS * live.current.noise, 'mA/m^2', 2);
   const field = numberText(vector.alphaLeastG, 'G', 2);
   const text = `Below noise, or at an edge: current under ${CURRENT_DEVIATIONS} deviations (mostly ${current}), alpha under a field of ${field}`;
   return [entry('dead', text)];

@@ -10,6 +10,7 @@ import { wrapText } from './text-fit.js';
 export type LegendSample =
   | 'line'
   | 'strong'
+  | 'slim'
   | 'up'
   | 'down'
   | 'poles'
@@ -88,7 +89,7 @@ function columnHeight({ entries, width }: PlacedColumn): number {
 
 function entryLines(entry: LegendEntry, width: number): readonly string[] {
   // Slanted text leans out of its box by a few pixels.
-  return wrapText(entry.text, width - textLeft(entry) - 4, SMALL, 4);
+  return wrapText(entry.text, width - textLeft(entry) - 4, SMALL, 6);
 }
 
 function textLeft(entry: LegendEntry): number {
@@ -105,6 +106,7 @@ function drawSample(
   const flat = [[x, y, x + SAMPLE_WIDTH, y]];
   if (sample === 'line') drawPlainLine(drawing, wave);
   if (sample === 'strong') drawStrongLine(drawing, wave);
+  if (sample === 'slim') drawStrongLine(drawing, wave, true);
   if (sample === 'up') drawCurrentLine(drawing, flat, 1, true);
   if (sample === 'down') drawCurrentLine(drawing, flat, -1, true);
   if (sample === 'closed') drawClosedLine(drawing, wave);

@@ -15,7 +15,7 @@ import {
   fieldLinePaths,
 } from './field-line-layer.js';
 import { drawTicks, type HorizontalTicks, horizontalTicks } from './horizontal-ticks.js';
-import { type InversionPaths, inversionPaths } from './inversion-layer.js';
+import { type InversionPaths, inversionPaths, withoutSpecks } from './inversion-layer.js';
 import { drawCurrentLine, drawPlainLine, drawPoleSign, drawStrongLine } from './line-styles.js';
 import type { MapFrame } from './map-frame.js';
 import { displayField, fieldLimit, paintMap } from './map-layer.js';
@@ -46,13 +46,14 @@ export function mapContent(picture: RegionPicture, frame: MapFrame): MapContent 
   const samples = displayField(picture.radialField, frame);
   const limit = fieldLimit(picture.radialField);
   const current = fieldPanelCurrent(picture);
+  const inversion = inversionPaths(picture.inversionLines, frame);
   return {
     frame,
     samples,
     limit,
     hasMissing: samples.includes(Number.NaN),
     poles: strongestPoles(samples, frame, limit),
-    inversion: inversionPaths(picture.inversionLines, frame),
+    inversion: picture.vector ? withoutSpecks(inversion) : inversion,
     fieldLines: fieldLinePaths(picture.fieldLines ?? [], picture.patch.pixelMm, frame),
     current,
     contours: current ? currentContours(current, frame) : [],
@@ -82,7 +83,7 @@ export function drawMap(canvas: Canvas, picture: RegionPicture, content: MapCont
     drawClosedLine(drawing, content.fieldLines.closed);
     if (content.ticks) drawTicks(drawing, content.ticks.ticks);
     drawPlainLine(drawing, content.inversion.plain);
-    drawStrongLine(drawing, content.inversion.strong);
+    drawStrongLine(drawing, content.inversion.strong, content.ticks !== undefined);
     for (const { px, py, sign } of content.poles) drawPoleSign(drawing, px, py, sign);
   });
   drawFrame(drawing, picture, frame);

@@ -27,7 +27,7 @@ const SIDE_BAR_WIDTH = 344;
 
 /**
  * Arranges the three panels of a vector map by the shape of the patch: side by side where it is tall,
- * 2 x 2 with legend and flags in the fourth place where it is about square, one below the other where
+ * 2 x 2 with the legend in the fourth place where it is about square, one below the other where
  * it is wide. At most about 1900 x 1400 px.
  */
 export function arrangeVector(needs: LayoutNeeds): Layout {
@@ -48,7 +48,7 @@ function arrangeRow(needs: LayoutNeeds): Layout {
   return besideTable(needs, width, field, panels);
 }
 
-/** Field and current above, alpha and legend with flags below, table at the right. */
+/** Field and current above, alpha and legend below, table at the right. */
 function arrangeGrid(needs: LayoutNeeds): Layout {
   const column = columnOf(needs, mapSize(needs.nx, needs.ny, 548, 464));
   const secondX = MARGIN + column.width + PANEL_GAP;
@@ -61,7 +61,10 @@ function arrangeGrid(needs: LayoutNeeds): Layout {
   const legend = box(secondX + AXIS_LEFT, legendY, inner, needs.legendHeight(inner));
   const sideX = secondX + column.width + COLUMN_GAP;
   const side = placeSide(sideX, TOP, needs);
-  const flags = box(legend.x, bottom(legend) + GAP, inner, needs.flagsHeight(inner));
+  const fourth = box(legend.x, bottom(legend) + GAP, inner, needs.flagsHeight(inner));
+  // Under the table the flags have more room; not where they would make the picture taller.
+  const lowest = Math.max(bottom(alpha.colourBar), bottom(fourth));
+  const flags = bottom(side.flags) <= lowest ? side.flags : fourth;
   return finish(sideX + needs.tableWidth + MARGIN, {
     ...field,
     panels: [current, alpha],
