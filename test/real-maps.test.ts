@@ -150,6 +150,10 @@ describe.skipIf(!folder)('real magnetograms', () => {
       expect(quantities.free_energy?.basis).toBe('measured');
       expect(value('disambiguation_flux_fraction_changed')).toBeLessThan(0.3);
       expect(flags.join()).toMatch(/180 degree ambiguity resolved by minimum energy/);
+      expect(flags.join()).not.toMatch(/another axis/);
+      // Counted from the default axis, these azimuths lie across the potential field: the reader is told.
+      const wrong = vectorQuickLook(sources, { analysis: { pixelMm: 1, disambiguation: 'acute' } });
+      expect(wrong.document.regions[0].flags.join()).toMatch(/counted from another axis/);
     },
   );
 });

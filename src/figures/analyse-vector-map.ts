@@ -1,5 +1,6 @@
 import { DataError } from '../errors.js';
 import { acuteAngle } from '../field/disambiguation/acute-angle.js';
+import { azimuthAgreement } from '../field/disambiguation/azimuth-agreement.js';
 import { type MinimumEnergyResult, minimumEnergy } from '../field/disambiguation/minimum-energy.js';
 import type { VectorField, VectorNoise } from '../field/vector-field.js';
 import type { PatchOptions } from '../geometry/make-patch.js';
@@ -129,22 +130,35 @@ function noiseOf(patch: VectorPatch, baseG: number): Noise {
   };
 }
 
+/** Warns of azimuths that lie across the current-free field: counted from another axis, most likely. */
+function axisFlags(patch: CameraVectorPatch, reference: VectorField, leastG: number): string[] {
+  const { meanCosine, turnDeg } = azimuthAgreement(patch, reference, leastG);
+  if (!(meanCosine < 0)) return [];
+  return [
+    `the azimuths lie ${Math.abs(turnDeg).toFixed(0)} degrees from the potential field on average: they are probably counted from another axis, see --azimuth-zero; do not trust the currents before that is settled`,
+  ];
+}
+
 /** The field with its ambiguity resolved, and what that says. */
 function resolve(
   patch: VectorPatch,
   noise: Noise,
   way: Disambiguation,
 ): { readonly field: VectorField; readonly changed?: number; readonly flags: string[] } {
+  if (patch.kind === 'heliographic') return { field: patch.field, flags: [] };
   if (patch.field)
     return { field: patch.field, flags: ['the map itself says which way the azimuth points'] };
-  if (patch.kind === 'heliographic')
-    return { field: (patch as VectorPatch & { field: VectorField }).field, flags: [] };
-  if (way === 'acute')
-    return {
-      field: acuteAngle(patch).field,
-      flags: ['180 degree ambiguity resolved by the acute angle to the potential field'],
-    };
   const weakG = WEAK_DEVIATIONS * noise.transverseG;
+  if (way === 'acute') {
+    const { field, reference } = acuteAngle(patch);
+    return {
+      field,
+      flags: [
+        '180 degree ambiguity resolved by the acute angle to the potential field',
+        ...axisFlags(patch, reference, 2 * weakG),
+      ],
+    };
+  }
   const found: MinimumEnergyResult = minimumEnergy(patch, { weakG });
   const share = (value: number) => `${(100 * value).toPrecision(2)} %`;
   return {
@@ -152,6 +166,7 @@ function resolve(
     changed: found.changedFieldFraction,
     flags: [
       `180 degree ambiguity resolved by minimum energy (Metcalf 1994): of ${found.strongPixels} pixels above ${weakG.toPrecision(3)} G ${share(found.changedFraction)} changed from the acute angle, ${share(found.turnedFraction)} turned from the map; functional ${found.startFunctional.toPrecision(3)} to ${found.functional.toPrecision(3)} G/Mm`,
+      ...axisFlags(patch, found.reference, 2 * weakG),
     ],
   };
 }

@@ -41,8 +41,11 @@ export function acuteFlips(readings: FieldReadings, reference: VectorField): Uin
  * Resolves the 180 degree ambiguity by the acute angle to the current-free field that has the
  * observed line-of-sight component. Missing pixels are NaN and not turned.
  */
-export function acuteAngle(field: AmbiguousField): ResolvedField {
+export function acuteAngle(
+  field: AmbiguousField,
+): ResolvedField & { readonly reference: VectorField } {
   const readings = readField(field);
-  const flips = acuteFlips(readings, potentialReference(field));
-  return { field: resolveField(readings, flips), flips };
+  const reference = potentialReference(field);
+  const flips = acuteFlips(readings, reference);
+  return { field: resolveField(readings, flips), flips, reference };
 }
