@@ -1,5 +1,19 @@
 // What a program may import from spotjoule.
+export {
+  type EnergyProfile,
+  freeEnergyByHeight,
+  potentialEnergyByHeight,
+} from './energy/energy-by-height.js';
 export * from './errors.js';
+export { type FieldLine, type TraceOptions, traceFieldLines } from './field/field-lines.js';
+export { geometricHeights, uniformHeights } from './field/heights.js';
+export { seedsByFlux } from './field/line-seeds.js';
+export {
+  type FieldVolume,
+  potentialVolume,
+  potentialVolumeDouble,
+  type VolumeOptions,
+} from './field/volume.js';
 export type { MapAnalysis, MapAnalysisOptions } from './figures/analyse-map.js';
 export { analyseMap } from './figures/analyse-map.js';
 export {
