@@ -21,7 +21,8 @@ export function startPictureDrawer(): PictureDrawer {
     new Promise<Uint8Array>((resolve, reject) => {
       worker.ref();
       const settle = (finish: () => void) => {
-        worker.removeAllListeners();
+        // By name: Node hears its own events of the thread through listeners too.
+        for (const event of ['message', 'error', 'exit']) worker.removeAllListeners(event);
         worker.unref();
         finish();
       };

@@ -33,7 +33,7 @@ async function answer(picture: RegionPicture): Promise<PictureAnswer> {
   try {
     return { content: await renderRegionPicture(revive(picture)) };
   } catch (error) {
-    return { fault: error instanceof Error ? (error.stack ?? error.message) : String(error) };
+    return { fault: error instanceof Error ? error.message : String(error) };
   }
 }
 

@@ -1,3 +1,4 @@
+import { polarityMap } from '../field/polarity.js';
 import { paddedSpectrum, type Sides } from '../field/potential.js';
 import type { Spectrum2 } from '../grid/fft.js';
 import { type Grid2, makeGrid } from '../grid/grid.js';
@@ -12,9 +13,6 @@ import {
   periodicForm,
   subtractForms,
 } from './spectral-energy.js';
-
-/** Field above this many noise deviations counts as signal where noise would add up unsigned. */
-export const SIGNAL_DEVIATIONS = 3;
 
 /** Number of pixels that hold a value. */
 function knownPixels(field: Grid2<'G'>): number {
@@ -48,23 +46,26 @@ const COARSENED_SIDE = 200;
 /**
  * Ceiling on free energy [J]: the energy of the wholly open field of the same boundary, which is the
  * current-free field of |Bz|, less that of the closed one (Aly 1991, ApJ 375, L61; Sturrock 1991, ApJ
- * 380, 655). Both are taken of the pixels above three noise deviations, since noise adds up in |Bz|.
+ * 380, 655). Noise would add up in |Bz|: it is the field times the polarity of `polarityMap` instead.
  */
-export function freeEnergyCeiling(radial: Grid2<'G'>, noise: FieldNoise): Energy {
+export function freeEnergyCeiling(
+  radial: Grid2<'G'>,
+  noise: FieldNoise,
+  polarity: Int8Array = polarityMap(radial, { ...noise, pixelDeviationG: noise.deviationG }),
+): Energy {
   const [ny, nx] = radial.values.shape;
-  const least = SIGNAL_DEVIATIONS * noise.deviationG;
   const factor = Math.min(nx, ny) >= COARSENED_SIDE ? 2 : 1;
-  const evaluate = (change: (b: number) => number): Energy => {
+  const evaluate = (weight: (sign: number) => number): Energy => {
     const { data } = radial.values;
     const signal = new Float64Array(data.length);
     for (let i = 0; i < data.length; i++)
-      if (Math.abs(data[i]) >= least) signal[i] = change(data[i]);
+      if (polarity[i] !== 0) signal[i] = weight(polarity[i]) * data[i];
     const blocks = blockMean(signal, nx, ny, factor);
     const field = makeGrid(blocks.values, blocks.nx, blocks.ny, 'G', factor * radial.pixelMm);
     return openEnergy(field, 0, noise);
   };
-  const closed = evaluate((b) => b);
-  const open = evaluate(Math.abs);
+  const closed = evaluate(() => 1);
+  const open = evaluate((sign) => sign);
   return { joules: open.joules - closed.joules, sigma: Math.hypot(open.sigma, closed.sigma) };
 }
 

@@ -10,9 +10,6 @@ export interface FluxSums {
   readonly negativeMx: number;
   readonly positivePixels: number;
   readonly negativePixels: number;
-  /** Pixels within a third of the threshold of it, of each sign: noise may carry them across. */
-  readonly positiveEdgePixels: number;
-  readonly negativeEdgePixels: number;
   readonly peakPositiveG: number;
   readonly peakNegativeG: number;
   /** Flux-weighted centres of the two polarities; NaN where one is empty. */
@@ -20,13 +17,11 @@ export interface FluxSums {
   readonly negativeCenter: readonly [number, number];
 }
 
-/** Sums a radial field [G] over the pixels of at least `leastG`; NaN is left out. */
-export function sumFlux(radial: Grid2<'G'>, leastG: number): FluxSums {
+/** Sums a radial field [G] by the polarity of its pixels (`polarityMap`); NaN is left out. */
+export function sumFlux(radial: Grid2<'G'>, polarity: Int8Array): FluxSums {
   const [ny, nx] = radial.values.shape;
   const b = radial.values.data;
   const sums = { up: 0, upX: 0, upY: 0, upN: 0, down: 0, downX: 0, downY: 0, downN: 0 };
-  let upEdge = 0;
-  let downEdge = 0;
   let peakPositiveG = 0;
   let peakNegativeG = 0;
   for (let y = 0; y < ny; y++) {
@@ -35,16 +30,13 @@ export function sumFlux(radial: Grid2<'G'>, leastG: number): FluxSums {
       if (Number.isNaN(value)) continue;
       if (value > peakPositiveG) peakPositiveG = value;
       if (value < peakNegativeG) peakNegativeG = value;
-      if (Math.abs(Math.abs(value) - leastG) < leastG / 3) {
-        if (value > 0) upEdge++;
-        else downEdge++;
-      }
-      if (value >= leastG && value > 0) {
+      const sign = polarity[x + nx * y];
+      if (sign > 0) {
         sums.up += value;
         sums.upX += value * x;
         sums.upY += value * y;
         sums.upN++;
-      } else if (value <= -leastG && value < 0) {
+      } else if (sign < 0) {
         sums.down -= value;
         sums.downX -= value * x;
         sums.downY -= value * y;
@@ -58,8 +50,6 @@ export function sumFlux(radial: Grid2<'G'>, leastG: number): FluxSums {
     negativeMx: sums.down * scale,
     positivePixels: sums.upN,
     negativePixels: sums.downN,
-    positiveEdgePixels: upEdge,
-    negativeEdgePixels: downEdge,
     peakPositiveG,
     peakNegativeG,
     positiveCenter: [sums.upX / sums.up, sums.upY / sums.up],

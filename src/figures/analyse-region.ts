@@ -4,6 +4,7 @@ import type { Energy } from '../energy/spectral-energy.js';
 import { type AlphaBelief, alphaPrior, assumedAlpha, beliefQuantile } from '../field/alpha.js';
 import { sumFlux } from '../field/flux.js';
 import type { InversionLine } from '../field/inversion-line.js';
+import { polarityMap } from '../field/polarity.js';
 import { paddedSpectrum, type Sides } from '../field/potential.js';
 import { type RadialMethod, radialByMu, radialField } from '../field/radial.js';
 import { type LocalPatch, PIXEL_GOOD, PIXEL_MISSING } from '../geometry/patch.js';
@@ -13,7 +14,7 @@ import { blockMean } from '../grid/rebin.js';
 import { circuitQuantities, currentQuantities } from './current-figures.js';
 import { fluxQuantities } from './flux-figures.js';
 import { lineQuantities } from './line-figures.js';
-import { type PatchNoise, patchNoise, signalLeast, UNIFORM_DEVIATION } from './patch-noise.js';
+import { type PatchNoise, patchNoise, UNIFORM_DEVIATION } from './patch-noise.js';
 import { type Quantities, type Quantity, withSigma } from './quantity.js';
 import type { RegionFigures } from './region.js';
 
@@ -61,10 +62,11 @@ export function analyseRegion(patch: LocalPatch, options: AnalysisOptions): Regi
   const { field: radial, method } = radialField(patch, options.radialMethod ?? 'potential');
   const other = otherRadial(patch, radial, method);
   const noise = patchNoise(patch, options);
-  const sums = sumFlux(radial, signalLeast(noise));
+  const polarity = polarityMap(radial, noise);
+  const sums = sumFlux(radial, polarity);
   const spectrum = paddedSpectrum(radial, sides);
   const potential = potentialWithSpread(radial, other, noise, sides, spectrum);
-  const ceiling = freeEnergyCeiling(radial, noise);
+  const ceiling = freeEnergyCeiling(radial, noise, polarity);
   const quantities: Quantities = {
     ...fluxQuantities(radial, sums, other, noise),
     potential_energy: energyQuantity('potential_energy', potential),
@@ -182,6 +184,6 @@ export function patchFlags(patch: LocalPatch, quantities: Quantities): string[] 
     );
   if (!patch.mask.includes(PIXEL_GOOD)) flags.push('no pixel holds a value');
   if (quantities.flux_imbalance?.value === null)
-    flags.push('flux imbalance cannot be had: no flux stands above the noise');
+    flags.push('fluxes cannot be had: no pixel stands above the noise');
   return flags;
 }

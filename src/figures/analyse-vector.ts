@@ -10,6 +10,7 @@ import type { Energy } from '../energy/spectral-energy.js';
 import { virialEnergy, virialFreeEnergy } from '../energy/virial.js';
 import { sumFlux } from '../field/flux.js';
 import type { InversionLine } from '../field/inversion-line.js';
+import { polarityMap } from '../field/polarity.js';
 import { paddedSpectrum, potentialHorizontalField, type Sides } from '../field/potential.js';
 import type { VectorField, VectorNoise } from '../field/vector-field.js';
 import type { LocalPatch } from '../geometry/patch.js';
@@ -19,7 +20,7 @@ import { heliographicName, patchFlags } from './analyse-region.js';
 import { circuitQuantities } from './current-figures.js';
 import { fluxQuantities } from './flux-figures.js';
 import { lineQuantities } from './line-figures.js';
-import { type PatchNoise, signalLeast } from './patch-noise.js';
+import type { PatchNoise } from './patch-noise.js';
 import { type Quantities, type QuantityKey, quantity, withSigma } from './quantity.js';
 import type { RegionFigures } from './region.js';
 
@@ -191,7 +192,8 @@ export function analyseVector(
   const spectrum = paddedSpectrum(radial, sides);
   const horizontal = potentialHorizontalField(radial, sides, spectrum);
   const potential = potentialEnergy(radial, verticalNoise, sides, spectrum);
-  const ceiling = freeEnergyCeiling(radial, verticalNoise);
+  const polarity = polarityMap(radial, verticalNoise);
+  const ceiling = freeEnergyCeiling(radial, verticalNoise, polarity);
   const alphaLeastG = Math.max(ALPHA_LEAST_G, 3 * verticalNoise.pixelDeviationG);
   const currents = measuredCurrents(input, alphaLeastG);
   const forces = forceBalance(field, noise);
@@ -206,7 +208,7 @@ export function analyseVector(
   const free = adopted.interval;
   const lines = lineQuantities(radial, verticalNoise, sides, spectrum);
   const shear = measureShear(lines.lines, field, horizontal, noise);
-  const sums = sumFlux(radial, signalLeast(verticalNoise));
+  const sums = sumFlux(radial, polarity);
   const circuit = circuitQuantities(radial, sums);
   const quantities: Quantities = {
     ...fluxQuantities(radial, sums, radial, verticalNoise),

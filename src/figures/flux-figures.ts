@@ -1,16 +1,11 @@
 import { areasAbove, type FluxSums, STRONG_AREA_FIELD_G, sumFlux } from '../field/flux.js';
+import { polarityMap } from '../field/polarity.js';
 import type { Grid2 } from '../grid/grid.js';
-import { type PatchNoise, signalLeast, UNIFORM_DEVIATION } from './patch-noise.js';
+import { type PatchNoise, UNIFORM_DEVIATION } from './patch-noise.js';
 import { type Quantities, quantity, withSigma } from './quantity.js';
 
 /**
- * A pixel at the threshold T = 3 sigma is in or out by chance: integrated over the crossing, the
- * variance is T^2 sigma / sqrt(pi) per unit of field, 9 / (2 sqrt pi) sigma^2 for each pixel within one sigma.
- */
-const EDGE_WEIGHT = 9 / (2 * Math.sqrt(Math.PI));
-
-/**
- * Fluxes, peaks and area of the radial field. Flux sums count pixels above three noise deviations; their
+ * Fluxes, peaks and area of the radial field. Flux sums go by `polarityMap`; their
  * errors join the noise, sigma sqrt(N pixel cell), with what the other way from the line of sight to
  * the radial field would change. `sums` are those of `radial`.
  */
@@ -20,7 +15,7 @@ export function fluxQuantities(
   other: Grid2<'G'>,
   noise: PatchNoise,
 ): Quantities {
-  const others = other === radial ? sums : sumFlux(other, signalLeast(noise));
+  const others = other === radial ? sums : sumFlux(other, polarityMap(other, noise));
   const pixelMm2 = radial.pixelMm ** 2;
   const noiseOf = (pixels: number) =>
     1e16 * noise.deviationG * Math.sqrt(pixels * pixelMm2 * noise.cellMm2);
@@ -28,12 +23,15 @@ export function fluxQuantities(
     Math.hypot(noiseOf(pixels), UNIFORM_DEVIATION * (here - there));
   const up = sums.positiveMx;
   const down = sums.negativeMx;
-  const upPixels = sums.positivePixels + EDGE_WEIGHT * sums.positiveEdgePixels;
-  const downPixels = sums.negativePixels + EDGE_WEIGHT * sums.negativeEdgePixels;
+  const upPixels = sums.positivePixels;
+  const downPixels = sums.negativePixels;
   const pixels = upPixels + downPixels;
-  const unsigned = up + down;
-  const unsignedSigma = sigma(pixels, unsigned, others.positiveMx + others.negativeMx);
-  const net = up - down;
+  // Nothing above the noise is no flux of zero: it cannot be had.
+  const unsigned = pixels > 0 ? up + down : Number.NaN;
+  // The other way raises one sign and lowers the other: their differences must not cancel.
+  const change = Math.abs(up - others.positiveMx) + Math.abs(down - others.negativeMx);
+  const unsignedSigma = Math.hypot(noiseOf(pixels), UNIFORM_DEVIATION * change);
+  const net = pixels > 0 ? up - down : Number.NaN;
   const netSigma = sigma(pixels, net, others.positiveMx - others.negativeMx);
   const one = noise.pixelDeviationG;
   const [area, less, more] = areasAbove(
@@ -52,13 +50,13 @@ export function fluxQuantities(
   return {
     positive_flux: withSigma(
       'positive_flux',
-      up,
+      pixels > 0 ? up : Number.NaN,
       sigma(upPixels, up, others.positiveMx),
       'measured',
     ),
     negative_flux: withSigma(
       'negative_flux',
-      -down,
+      pixels > 0 ? -down : Number.NaN,
       sigma(downPixels, down, others.negativeMx),
       'measured',
     ),

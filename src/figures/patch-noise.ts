@@ -1,4 +1,3 @@
-import { SIGNAL_DEVIATIONS } from '../energy/region-energy.js';
 import type { FieldNoise } from '../energy/spectral-energy.js';
 import type { LocalPatch } from '../geometry/patch.js';
 
@@ -23,9 +22,4 @@ export function patchNoise(
   const cellMm2 = options.sourcePixelMm ** 2 / (patch.component === 'radial' ? 1 : mu);
   const share = Math.min(1, Math.sqrt(cellMm2 / patch.pixelMm ** 2));
   return { deviationG, cellMm2, pixelDeviationG: deviationG * share };
-}
-
-/** Field [G] from which a pixel counts as signal. */
-export function signalLeast(noise: PatchNoise): number {
-  return SIGNAL_DEVIATIONS * noise.pixelDeviationG;
 }

@@ -123,6 +123,15 @@ describe('spotjoule quicklook', () => {
     expect(second.regions[0].patch.nx * second.regions[0].patch.pixel_Mm).toBeCloseTo(160, -1);
   });
 
+  it('draws the pictures of several files, one after the other', () => {
+    const run = spotjoule(folder, 'quicklook', SMALL, MAP, '--out', 'several');
+    expect(run.stderr).toBe('');
+    expect(run.status).toBe(0);
+    expect(
+      readdirSync(join(folder, 'several')).filter((name) => name.endsWith('.png')),
+    ).toHaveLength(2);
+  });
+
   it('gives the same figures twice', () => {
     const once = spotjoule(folder, 'quicklook', SMALL, '--json', '--no-picture').stdout;
     expect(spotjoule(folder, 'quicklook', SMALL, '--json', '--no-picture').stdout).toBe(once);

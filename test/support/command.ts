@@ -32,6 +32,7 @@ export function spotjoule(folder: string, ...args: readonly string[]): Outcome {
     encoding: 'utf8',
     env: { ...process.env, FORCE_COLOR: '' },
     maxBuffer: 64 << 20,
+    timeout: 50_000,
   });
   return { status, stdout, stderr };
 }
