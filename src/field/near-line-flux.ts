@@ -1,5 +1,5 @@
 import type { Grid2 } from '../grid/grid.js';
-import { blockMean } from '../grid/rebin.js';
+import { cellMean } from '../grid/rebin.js';
 import { gaussianSpread, WIDTH_PER_DEVIATION } from '../grid/smooth.js';
 import { MAXWELL_PER_GAUSS_SQUARE_MEGAMETRE } from '../units.js';
 
@@ -8,9 +8,16 @@ const STRONG_FIELD_G = 150;
 const WEIGHT_WIDTH_MM = 15;
 /**
  * The published measure is defined on 1.98 arcsec pixels, 1.44 Mm at disk centre: the touch of the two
- * polarities is within one such pixel, so finer maps are averaged to about that size first.
+ * polarities is within one such pixel, so finer maps are averaged to just that size first. Where the
+ * pixels fall matters, so the average over four grids half a pixel apart is taken.
  */
 const DEFINING_PIXEL_MM = 1.44;
+const GRIDS = [
+  [0, 0],
+  [0.5, 0],
+  [0, 0.5],
+  [0.5, 0.5],
+] as const;
 
 /** Pixels of `bitmap` or with one among their eight neighbours. */
 function dilate(bitmap: Uint8Array, nx: number, ny: number): Uint8Array {
@@ -26,37 +33,51 @@ function dilate(bitmap: Uint8Array, nx: number, ny: number): Uint8Array {
   return out;
 }
 
+/** Flux near the line and how it scatters with the place of the pixels [Mx]. */
+export interface NearLineFlux {
+  readonly mean: number;
+  readonly least: number;
+  readonly most: number;
+}
+
 /**
  * Unsigned flux [Mx] near strong-gradient inversion lines (Schrijver 2007, ApJ 655, L117): where
  * regions above 150 G of both signs, each grown by one 1.44 Mm pixel, overlap; that map convolved with a
- * Gaussian of 15 Mm full width and unit area weights |Bz|. Missing pixels carry none. One flux for each
- * of `shiftsG`, which move the 150 G, for intervals.
+ * Gaussian of 15 Mm full width and unit area weights |Bz|. Missing pixels carry none. One result for each
+ * of `shiftsG`, which move the 150 G, for intervals. Of maps with coarser pixels those are taken.
  */
-export function nearLineFlux(radial: Grid2<'G'>, shiftsG: readonly number[] = [0]): number[] {
-  const [height, width] = radial.values.shape;
-  const factor = Math.max(1, Math.round(DEFINING_PIXEL_MM / radial.pixelMm));
-  const blocks = blockMean(radial.values.data, width, height, factor);
-  const pixelMm = radial.pixelMm * factor;
-  const scale = pixelMm * pixelMm * MAXWELL_PER_GAUSS_SQUARE_MEGAMETRE;
-  const deviation = WEIGHT_WIDTH_MM / WIDTH_PER_DEVIATION / pixelMm;
+export function nearLineFlux(radial: Grid2<'G'>, shiftsG: readonly number[] = [0]): NearLineFlux[] {
+  const [ny, nx] = radial.values.shape;
+  const cell = Math.max(1, DEFINING_PIXEL_MM / radial.pixelMm);
+  const grids = GRIDS.map((offset) => cellMean(radial.values.data, nx, ny, cell, offset));
+  const pixelMm = radial.pixelMm * cell;
   return shiftsG.map((shift) => {
-    const touch = touching(blocks, STRONG_FIELD_G + shift);
-    if (!touch) return 0;
-    const weight = gaussianSpread(touch, blocks.nx, deviation);
-    let sum = 0;
-    for (let i = 0; i < weight.length; i++) {
-      const b = blocks.values[i];
-      if (!Number.isNaN(b)) sum += weight[i] * Math.abs(b);
-    }
-    return sum * scale;
+    const fluxes = grids.map((grid) => fluxOnGrid(grid, pixelMm, STRONG_FIELD_G + shift));
+    return {
+      mean: fluxes.reduce((a, b) => a + b) / fluxes.length,
+      least: Math.min(...fluxes),
+      most: Math.max(...fluxes),
+    };
   });
 }
 
+type Cells = ReturnType<typeof cellMean>;
+
+function fluxOnGrid(cells: Cells, pixelMm: number, thresholdG: number): number {
+  const touch = touching(cells, thresholdG);
+  if (!touch) return 0;
+  const deviation = WEIGHT_WIDTH_MM / WIDTH_PER_DEVIATION / pixelMm;
+  const weight = gaussianSpread(touch, cells.nx, deviation);
+  let sum = 0;
+  for (let i = 0; i < weight.length; i++) {
+    const b = cells.values[i];
+    if (!Number.isNaN(b)) sum += weight[i] * Math.abs(b);
+  }
+  return sum * pixelMm * pixelMm * MAXWELL_PER_GAUSS_SQUARE_MEGAMETRE;
+}
+
 /** 1 where both signs above the threshold touch, else 0; undefined where they never do. */
-function touching(
-  { values, nx, ny }: { readonly values: Float64Array; readonly nx: number; readonly ny: number },
-  thresholdG: number,
-): Float64Array | undefined {
+function touching({ values, nx, ny }: Cells, thresholdG: number): Float64Array | undefined {
   const above = new Uint8Array(values.length);
   const below = new Uint8Array(values.length);
   for (let i = 0; i < values.length; i++) {

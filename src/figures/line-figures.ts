@@ -16,6 +16,7 @@ import { type Quantities, quantity } from './quantity.js';
 
 /** Coarser pixels than this [Mm] cannot tell a gradient at an inversion line. */
 const COARSEST_PIXEL_MM = 4;
+const COARSEST_NEAR_LINE_MM = 1.6;
 
 /** Noise [G] of the field smoothed for its zero line: a Gaussian of deviation s averages 4 pi s^2. */
 function smoothedNoise(pixelMm: number, noise: PatchNoise): number {
@@ -81,8 +82,17 @@ export function lineQuantities(
         more.gradientWeightedG,
         'extrapolated',
       ),
-      near_line_flux: quantity('near_line_flux', near, nearFewer, nearMore, 'measured'),
+      near_line_flux: quantity(
+        'near_line_flux',
+        near.mean,
+        nearFewer.least,
+        nearMore.most,
+        'measured',
+      ),
     },
-    flags: [],
+    flags:
+      radial.pixelMm > COARSEST_NEAR_LINE_MM
+        ? ['near-line flux is defined on pixels of 1.44 Mm: from coarser ones it is too large']
+        : [],
   };
 }
