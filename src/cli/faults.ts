@@ -14,6 +14,10 @@ export function faultLine(error: unknown, file: string | undefined, debug: boole
     : `internal fault: ${message} (please report it; --debug shows where)`;
   const line = `spotjoule: ${where === undefined ? '' : `${where}${hdu}: `}${what}`;
   const stack = debug && error instanceof Error ? `\n${error.stack}` : '';
-  // Control characters in a file name or a header must not reach the terminal.
-  return `${line.replace(/[\p{Cc}\p{Zl}\p{Zp}]+/gu, ' ')}${stack}`;
+  return `${printable(line)}${stack}`;
+}
+
+/** One line without control characters: those of a file name or a header must not reach the terminal. */
+export function printable(text: string): string {
+  return text.replace(/[\p{Cc}\p{Zl}\p{Zp}]+/gu, ' ');
 }

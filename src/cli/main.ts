@@ -138,7 +138,8 @@ for (const command of [program, ...program.commands]) {
 process.stdout.on('error', (error: NodeJS.ErrnoException) => {
   // The reader of a pipe may leave early (`| head`): that is no fault.
   if (error.code === 'EPIPE') process.exit(DONE);
-  throw error;
+  process.stderr.write(`spotjoule: standard output cannot be written (${error.code})\n`);
+  process.exit(FAILED);
 });
 
 try {

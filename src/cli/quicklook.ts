@@ -4,8 +4,8 @@ import { numberText } from '../render/number-format.js';
 import { regionSummary } from '../report/summary.js';
 import { quickLookCsv } from '../report/table.js';
 import type { ComponentOptions } from './component-options.js';
-import { DONE, FAILED, PARTLY } from './exit-codes.js';
-import { faultLine } from './faults.js';
+import { DONE, FAILED, PARTLY, USAGE } from './exit-codes.js';
+import { faultLine, printable } from './faults.js';
 import { type Look, lookAtMap, lookAtVector } from './look.js';
 import { makeOutputFolder, writeTogether } from './output.js';
 import { type PictureDrawer, startPictureDrawer } from './picture-drawer.js';
@@ -145,12 +145,14 @@ function print({ look, files }: Results, json: boolean): void {
   }
   const basis = noiseBasis === 'measured' ? 'from quiet pixels' : 'given';
   const context = {
-    source: basename(file),
+    source: printable(basename(file)),
     observed: document.source.observed,
     noise: `${numberText(noiseG, 'G')} (${basis})`,
-    files: files.map(({ path }) => path),
+    files: files.map(({ path }) => printable(path)),
   };
-  process.stdout.write(regionSummary(figures, context, useColour()));
+  process.stdout.write(
+    regionSummary({ ...figures, id: printable(figures.id) }, context, useColour()),
+  );
 }
 
 /**
@@ -162,6 +164,8 @@ export async function runQuickLook(
   files: readonly string[],
   options: QuickLookArguments,
 ): Promise<number> {
+  if (options.out === '') throw new UsageError('--out names no folder');
+  if (options.regionId?.trim() === '') throw new UsageError('--region-id names no region');
   checkNames(files);
   checkVolumeOptions(options);
   checkVectorOptions(options);
@@ -171,6 +175,7 @@ export async function runQuickLook(
     : files.map((file) => ({ file, look: () => lookAtMap(file, options) }));
   const drawer = options.picture ? startPictureDrawer() : undefined;
   let failures = 0;
+  let isUsage = true;
   for (const { file, look } of tasks) {
     try {
       const results = await finish(look(), options, drawer);
@@ -179,10 +184,12 @@ export async function runQuickLook(
       print(results, options.json === true);
     } catch (error) {
       failures++;
+      isUsage &&= error instanceof UsageError;
       process.stderr.write(`${faultLine(error, file, options.debug === true)}\n`);
     }
   }
   await drawer?.close();
   if (failures === 0) return DONE;
-  return failures === tasks.length ? FAILED : PARTLY;
+  if (failures < tasks.length) return PARTLY;
+  return isUsage ? USAGE : FAILED;
 }

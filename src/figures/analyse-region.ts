@@ -168,6 +168,9 @@ function methodFlags(method: RadialMethod): string[] {
   return method === 'mu' ? ['radial field by mu correction (line of sight over mu)'] : [];
 }
 
+/** The strongest field ever seen in a spot is below this [G]: common practice, no source. */
+const STRONGEST_FIELD_G = 10_000;
+
 /** What the reader must know of the patch itself: balance of flux, missing pixels. */
 export function patchFlags(patch: LocalPatch, quantities: Quantities): string[] {
   const flags: string[] = [];
@@ -175,6 +178,14 @@ export function patchFlags(patch: LocalPatch, quantities: Quantities): string[] 
   if (Math.abs(imbalance) > 0.2)
     flags.push(
       `flux is out of balance by ${Math.round(100 * Math.abs(imbalance))} %: part of the region may lie outside the patch, energies are less sure than their intervals`,
+    );
+  const peak = Math.max(
+    quantities.peak_positive_field?.value ?? 0,
+    -(quantities.peak_negative_field?.value ?? 0),
+  );
+  if (peak > STRONGEST_FIELD_G)
+    flags.push(
+      `a field of ${peak.toPrecision(2)} G is beyond what the Sun shows: check the unit of the map`,
     );
   let missing = 0;
   for (const code of patch.mask) if (code === PIXEL_MISSING) missing++;

@@ -130,7 +130,7 @@ function beliefFlags({ basis, removed }: AlphaBelief, quantities: Quantities): s
   const flags: string[] = [];
   if (basis === 'prior')
     flags.push(
-      'free energy, currents and inductance rest on a prior for alpha (by latitude): a line-of-sight map does not measure them',
+      'free energy, currents and inductance rest on a prior for alpha (by latitude) and are those of the median size of alpha, whatever its sign: a line-of-sight map does not measure them',
     );
   else
     flags.push(

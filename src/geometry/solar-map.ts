@@ -104,6 +104,9 @@ function joined(items: readonly string[]): string {
     : `${items.slice(0, -1).join(', ')} and ${items[items.length - 1]}`;
 }
 
+/** No telescope resolves 10 km on the Sun: a smaller pixel is a wrong scale. */
+const SMALLEST_PIXEL_MM = 0.01;
+
 /** A map but for its values and what they are. */
 export type PlacedMap = Omit<SolarMap, 'values' | 'component' | 'unit'>;
 
@@ -131,6 +134,13 @@ export function placeMap(
       context,
     );
   const pictureWarnings = checkPlacement(header, geometry, observer, nx, ny, options, context);
+  const pixelMm = pixelSide(geometry, observer);
+  if (!(pixelMm >= SMALLEST_PIXEL_MM))
+    throw new GeometryError(
+      `by its header a pixel is ${pixelMm.toPrecision(2)} Mm on the Sun; wanted at least ${SMALLEST_PIXEL_MM}: --pixel-scale ARCSEC overrules it`,
+      context,
+    );
+  const undated = place.observed === undefined ? ['the map does not say when it was taken'] : [];
   return {
     nx,
     ny,
@@ -138,11 +148,11 @@ export function placeMap(
     geometry,
     observer,
     observed: place.observed,
-    pixelMm: pixelSide(geometry, observer),
+    pixelMm,
     hdu,
     sourceName: file.name,
     fullDisk: isFullDisk(geometry, observer, nx, ny),
-    warnings: [...place.warnings, ...pictureWarnings],
+    warnings: [...undated, ...place.warnings, ...pictureWarnings],
   };
 }
 

@@ -242,6 +242,37 @@ describe('spotjoule quicklook refuses in one line', () => {
     );
   });
 
+  it('a pixel too small to be, an empty name, a unit that is none', () => {
+    const tiny = join(empty, 'tiny.fits');
+    const bytes = Buffer.from(readFileSync(SMALL));
+    for (const keyword of ['CDELT1', 'CDELT2']) {
+      const at = bytes.indexOf(`${keyword}  =`);
+      bytes.write(`${keyword}  =                1E-09`.padEnd(80), at, 'latin1');
+    }
+    writeFileSync(tiny, bytes);
+    expectRefusal(spotjoule(empty, 'quicklook', tiny), 1, /tiny\.fits.*wanted at least 0\.01/);
+    expectRefusal(
+      spotjoule(empty, 'quicklook', SMALL, '--region-id', ''),
+      2,
+      /--region-id names no region/,
+    );
+    expectRefusal(spotjoule(empty, 'quicklook', SMALL, '--out', ''), 2, /--out names no folder/);
+    expectRefusal(spotjoule(empty, 'quicklook', SMALL, '--unit', 'furlong'), 2, /no magnetic unit/);
+  });
+
+  it('control characters on the way to the terminal', () => {
+    const run = spotjoule(
+      folder,
+      'quicklook',
+      SMALL,
+      '--no-picture',
+      '--region-id',
+      'a\u001b[31mb',
+    );
+    expect(run.stdout).not.toContain('\u001b');
+    expect(run.status).toBe(0);
+  });
+
   it('two files whose results would overwrite each other', () => {
     const other = join(empty, 'other');
     mkdirSync(other);

@@ -62,7 +62,7 @@ describe('spotjoule quicklook --volume, --lines', () => {
       expect(stderr).toMatch(pattern);
     }
     const large = run('--volume', '--pixel', '0.4', '--levels', '1024', '--out', 'f');
-    expect(large.status).toBe(1);
+    expect(large.status).toBe(2);
     expect(large.stderr).toMatch(/MiB, more than 512: fewer --levels/);
     expect(existsSync(join(folder, 'f'))).toBe(false);
   });
