@@ -1,5 +1,5 @@
 import type { Grid2 } from '../grid/grid.js';
-import { cellMean } from '../grid/rebin.js';
+import { type CellMap, cellMeans } from '../grid/rebin.js';
 import { gaussianSpread, WIDTH_PER_DEVIATION } from '../grid/smooth.js';
 import { MAXWELL_PER_GAUSS_SQUARE_MEGAMETRE } from '../units.js';
 
@@ -49,7 +49,7 @@ export interface NearLineFlux {
 export function nearLineFlux(radial: Grid2<'G'>, shiftsG: readonly number[] = [0]): NearLineFlux[] {
   const [ny, nx] = radial.values.shape;
   const cell = Math.max(1, DEFINING_PIXEL_MM / radial.pixelMm);
-  const grids = GRIDS.map((offset) => cellMean(radial.values.data, nx, ny, cell, offset));
+  const grids = cellMeans(radial.values.data, nx, ny, cell, GRIDS);
   const pixelMm = radial.pixelMm * cell;
   return shiftsG.map((shift) => {
     const fluxes = grids.map((grid) => fluxOnGrid(grid, pixelMm, STRONG_FIELD_G + shift));
@@ -61,9 +61,7 @@ export function nearLineFlux(radial: Grid2<'G'>, shiftsG: readonly number[] = [0
   });
 }
 
-type Cells = ReturnType<typeof cellMean>;
-
-function fluxOnGrid(cells: Cells, pixelMm: number, thresholdG: number): number {
+function fluxOnGrid(cells: CellMap, pixelMm: number, thresholdG: number): number {
   const touch = touching(cells, thresholdG);
   if (!touch) return 0;
   const deviation = WEIGHT_WIDTH_MM / WIDTH_PER_DEVIATION / pixelMm;
@@ -77,7 +75,7 @@ function fluxOnGrid(cells: Cells, pixelMm: number, thresholdG: number): number {
 }
 
 /** 1 where both signs above the threshold touch, else 0; undefined where they never do. */
-function touching({ values, nx, ny }: Cells, thresholdG: number): Float64Array | undefined {
+function touching({ values, nx, ny }: CellMap, thresholdG: number): Float64Array | undefined {
   const above = new Uint8Array(values.length);
   const below = new Uint8Array(values.length);
   for (let i = 0; i < values.length; i++) {

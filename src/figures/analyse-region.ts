@@ -68,7 +68,7 @@ export function analyseRegion(patch: LocalPatch, options: AnalysisOptions): Regi
   const potential = potentialWithSpread(radial, other, noise, sides, spectrum);
   const ceiling = freeEnergyCeiling(radial, noise, polarity);
   const quantities: Quantities = {
-    ...fluxQuantities(radial, sums, other, noise),
+    ...fluxQuantities(radial, sums, polarity, other, noise),
     potential_energy: energyQuantity('potential_energy', potential),
     free_energy_ceiling: energyQuantity('free_energy_ceiling', ceiling),
   };

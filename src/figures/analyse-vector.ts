@@ -211,7 +211,7 @@ export function analyseVector(
   const sums = sumFlux(radial, polarity);
   const circuit = circuitQuantities(radial, sums);
   const quantities: Quantities = {
-    ...fluxQuantities(radial, sums, radial, verticalNoise),
+    ...fluxQuantities(radial, sums, polarity, radial, verticalNoise),
     potential_energy: withSigma(
       'potential_energy',
       potential.joules,

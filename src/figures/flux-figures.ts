@@ -1,5 +1,4 @@
 import { areasAbove, type FluxSums, STRONG_AREA_FIELD_G, sumFlux } from '../field/flux.js';
-import { polarityMap } from '../field/polarity.js';
 import type { Grid2 } from '../grid/grid.js';
 import { type PatchNoise, UNIFORM_DEVIATION } from './patch-noise.js';
 import { type Quantities, quantity, withSigma } from './quantity.js';
@@ -7,15 +6,17 @@ import { type Quantities, quantity, withSigma } from './quantity.js';
 /**
  * Fluxes, peaks and area of the radial field. Flux sums go by `polarityMap`; their
  * errors join the noise, sigma sqrt(N pixel cell), with what the other way from the line of sight to
- * the radial field would change. `sums` are those of `radial`.
+ * the radial field would change. `sums` are those of `radial` by
+ * `polarity`.
  */
 export function fluxQuantities(
   radial: Grid2<'G'>,
   sums: FluxSums,
+  polarity: Int8Array,
   other: Grid2<'G'>,
   noise: PatchNoise,
 ): Quantities {
-  const others = other === radial ? sums : sumFlux(other, polarityMap(other, noise));
+  const others = other === radial ? sums : sumFlux(other, polarity);
   const pixelMm2 = radial.pixelMm ** 2;
   const noiseOf = (pixels: number) =>
     1e16 * noise.deviationG * Math.sqrt(pixels * pixelMm2 * noise.cellMm2);

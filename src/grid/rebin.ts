@@ -32,6 +32,13 @@ export function blockMean(
   return { values: out, nx: mx, ny: my };
 }
 
+/** A map of cells, row-major. */
+export interface CellMap {
+  readonly values: Float64Array;
+  readonly nx: number;
+  readonly ny: number;
+}
+
 /** Sums over everything south-west of each pixel corner: (nx + 1) * (ny + 1) values. */
 function cornerSums(nx: number, ny: number, at: (i: number) => number): Float64Array {
   const width = nx + 1;
@@ -47,19 +54,30 @@ function cornerSums(nx: number, ny: number, at: (i: number) => number): Float64A
 }
 
 /**
- * Mean over square cells of `cell` pixels (1 or more, not whole), the first of them `offset` cells from the
- * south-west corner, each pixel by the share of it that lies in the cell; NaN is left out, and a cell is
+ * Means over square cells of `cell` pixels (1 or more, not whole), one map for each of `offsets`: how many
+ * cells the first lies from the south-west corner. Each pixel by the share of it that lies in the cell; NaN is left out, and a cell is
  * NaN where less than half of it is known. Cells that leave the map are dropped.
  */
-export function cellMean(
+export function cellMeans(
   values: Float64Array,
   nx: number,
   ny: number,
   cell: number,
-  offset: readonly [number, number] = [0, 0],
-): { readonly values: Float64Array; readonly nx: number; readonly ny: number } {
+  offsets: readonly (readonly [number, number])[],
+): CellMap[] {
   const sums = cornerSums(nx, ny, (i) => (Number.isNaN(values[i]) ? 0 : values[i]));
   const known = cornerSums(nx, ny, (i) => (Number.isNaN(values[i]) ? 0 : 1));
+  return offsets.map((offset) => cellMean(sums, known, nx, ny, cell, offset));
+}
+
+function cellMean(
+  sums: Float64Array,
+  known: Float64Array,
+  nx: number,
+  ny: number,
+  cell: number,
+  offset: readonly [number, number],
+): CellMap {
   const mx = Math.max(0, Math.floor(nx / cell - offset[0] + 1e-9));
   const my = Math.max(0, Math.floor(ny / cell - offset[1] + 1e-9));
   const edge = (k: number, start: number, n: number) => Math.min(n, (k + start) * cell);

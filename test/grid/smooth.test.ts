@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { bilinear, gradientSize } from '../../src/grid/gradient.js';
-import { blockMean, cellMean } from '../../src/grid/rebin.js';
+import { blockMean, cellMeans } from '../../src/grid/rebin.js';
 import { gaussianBlur, gaussianSpread, WIDTH_PER_DEVIATION } from '../../src/grid/smooth.js';
 
 describe('Gaussian blur', () => {
@@ -42,14 +42,17 @@ describe('mean over cells that are no whole number of pixels', () => {
   it('takes each pixel by its share, leaves out what is missing', () => {
     // Cells of 1.5 pixels: the first holds one pixel and half of the next, in both directions.
     const values = Float64Array.from({ length: 9 }, (_, i) => i);
-    const { values: out, nx, ny } = cellMean(values, 3, 3, 1.5);
+    const [{ values: out, nx, ny }] = cellMeans(values, 3, 3, 1.5, [[0, 0]]);
     expect([nx, ny]).toEqual([2, 2]);
     expect(out[0]).toBeCloseTo((0 + 0.5 * 1 + 0.5 * 3 + 0.25 * 4) / 2.25, 12);
     expect(out[3]).toBeCloseTo((0.25 * 4 + 0.5 * 5 + 0.5 * 7 + 8) / 2.25, 12);
     values[0] = Number.NaN;
-    expect(cellMean(values, 3, 3, 1.5).values[0]).toBeCloseTo((0.5 + 1.5 + 1) / 1.25, 12);
+    expect(cellMeans(values, 3, 3, 1.5, [[0, 0]])[0].values[0]).toBeCloseTo(
+      (0.5 + 1.5 + 1) / 1.25,
+      12,
+    );
     values[1] = Number.NaN;
-    expect(cellMean(values, 3, 3, 1.5).values[0]).toBeNaN();
+    expect(cellMeans(values, 3, 3, 1.5, [[0, 0]])[0].values[0]).toBeNaN();
   });
 });
 
